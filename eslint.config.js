@@ -1,2 +1,123 @@
+import boundaries from 'eslint-plugin-boundaries';
+import reactHooks from 'eslint-plugin-react-hooks';
 import tseslint from 'typescript-eslint';
-export default tseslint.config({ ignores: ['node_modules', 'dist', '.data'] }, ...tseslint.configs.recommended);
+
+/** Colours live in client/src/ui/tokens*; a raw one anywhere else in the client is a fault. */
+const rawColour = String.raw`/(#[0-9a-fA-F]{3,4}\b|#[0-9a-fA-F]{6}\b|#[0-9a-fA-F]{8}\b|\b(rgb|rgba|hsl|hsla|hwb|lab|lch|oklab|oklch|color)\()/`;
+const colourMessage = 'Colours come from ui/tokens: use a token, or add one there.';
+
+const sqlMessage = 'SQL lives in queries.ts (or server/db): services and routes hold none.';
+const pureMessage = 'shared/ is pure: no I/O, no clock, no randomness that is not passed in.';
+
+/** Who may import whom: the house of DEVELOPERS.md. Everything not allowed is refused. */
+const house = {
+  elements: [
+    { type: 'client-feature', pattern: 'client/src/features/*', capture: ['feature'] },
+    { type: 'client-app', pattern: 'client/src/app' },
+    { type: 'client-replay', pattern: 'client/src/replay' },
+    { type: 'client-ui', pattern: 'client/src/ui' },
+    { type: 'client-lib', pattern: 'client/src/lib' },
+    { type: 'server-feature', pattern: 'server/features/*', capture: ['feature'] },
+    { type: 'server', pattern: 'server' },
+    { type: 'shared', pattern: 'shared' },
+    { type: 'tests', pattern: 'tests' },
+    { type: 'samples', pattern: 'samples' },
+  ],
+  files: [
+    { category: 'entry', pattern: 'client/src/main.tsx' },
+    { category: 'public', pattern: '**/features/*/index.ts' },
+    { category: 'public', pattern: '**/features/*/index.tsx' },
+  ],
+};
+
+const to = (type, more = {}) => ({ to: { element: { type, ...more } } });
+const toPublic = (type) => ({ to: { element: { type }, file: { categories: 'public' } } });
+const toOwnFeature = (type) => ({ to: { element: { type, captured: { feature: '{{from.element.captured.feature}}' } } } });
+const from = (type, allow) => ({ from: { element: { type } }, allow });
+
+export default tseslint.config(
+  { ignores: ['node_modules', 'dist', '.data', '.screens', 'drizzle', 'coverage'] },
+  ...tseslint.configs.recommended,
+  {
+    linterOptions: { reportUnusedDisableDirectives: 'error' },
+    settings: {
+      'boundaries/elements': house.elements,
+      'boundaries/files': house.files,
+      'boundaries/include': ['client/**/*', 'server/**/*', 'shared/**/*', 'tests/**/*', 'samples/**/*'],
+      'import/resolver': { typescript: { alwaysTryTypes: true, project: './tsconfig.json' } },
+    },
+    plugins: { boundaries },
+    rules: {
+      '@typescript-eslint/no-explicit-any': 'error',
+      '@typescript-eslint/no-unused-vars': ['error', { argsIgnorePattern: '^_', varsIgnorePattern: '^_' }],
+      '@typescript-eslint/consistent-type-imports': ['error', { fixStyle: 'inline-type-imports' }],
+      'no-console': 'error',
+      eqeqeq: 'error',
+      'boundaries/dependencies': ['error', {
+        default: 'disallow',
+        policies: [
+          { allow: { to: { module: { origin: ['external', 'core'] } } } },
+          from('shared', to('shared')),
+          from('server', [to('shared'), to('server'), toPublic('server-feature')]),
+          from('server-feature', [to('shared'), to('server'), toPublic('server-feature'), toOwnFeature('server-feature')]),
+          from('client-lib', [to('shared'), to('client-lib')]),
+          from('client-ui', [to('shared'), to('client-lib'), to('client-ui')]),
+          from('client-replay', [to('shared'), to('client-lib'), to('client-ui'), to('client-replay')]),
+          from('client-feature', [
+            to('shared'), to('client-lib'), to('client-ui'), to('client-replay'), toPublic('client-feature'), toOwnFeature('client-feature'),
+          ]),
+          from('client-app', [to('shared'), to('client-lib'), to('client-ui'), to('client-replay'), to('client-app'), toPublic('client-feature')]),
+          { from: { file: { categories: 'entry' } }, allow: [to('client-app'), to('client-ui'), to('client-lib')] },
+          from('samples', [to('samples')]),
+          from('tests', [
+            to('shared'), to('server'), to('server-feature'), to('samples'), to('tests'),
+            ...['client-lib', 'client-ui', 'client-replay', 'client-feature', 'client-app'].map((type) => to(type)),
+          ]),
+        ],
+      }],
+    },
+  },
+  {
+    files: ['client/**/*.{ts,tsx}'],
+    plugins: { 'react-hooks': reactHooks },
+    rules: {
+      'react-hooks/rules-of-hooks': 'error',
+      'react-hooks/exhaustive-deps': 'error',
+    },
+  },
+  {
+    files: ['client/src/**/*.{ts,tsx}'],
+    ignores: ['client/src/ui/tokens*'],
+    rules: {
+      'no-restricted-syntax': ['error',
+        { selector: `Literal[value=${rawColour}]`, message: colourMessage },
+        { selector: `TemplateElement[value.raw=${rawColour}]`, message: colourMessage },
+      ],
+    },
+  },
+  {
+    files: ['server/**/*.ts'],
+    ignores: ['server/db/**', 'server/**/queries.ts', 'server/**/*-queries.ts', 'server/**/queries/**', 'server/**/*.test.ts'],
+    rules: {
+      '@typescript-eslint/no-restricted-imports': ['error', {
+        patterns: [{ group: ['drizzle-orm', 'drizzle-orm/*', 'pg'], message: sqlMessage }, { group: ['**/db/schema', '**/db/schema/*'], message: sqlMessage }],
+      }],
+    },
+  },
+  {
+    files: ['shared/**/*.ts'],
+    ignores: ['shared/**/*.test.ts'],
+    rules: {
+      '@typescript-eslint/no-restricted-imports': ['error', {
+        patterns: [{ group: ['node:*', 'fs', 'path', 'crypto', 'ws', 'express', 'react', 'react/*', 'three', 'drizzle-orm', 'drizzle-orm/*'], message: pureMessage }],
+      }],
+      'no-restricted-globals': ['error', ...['window', 'document', 'localStorage', 'fetch', 'process', 'Buffer', 'performance', 'setTimeout', 'setInterval', 'crypto'].map((name) => ({ name, message: pureMessage }))],
+      'no-restricted-properties': ['error', { object: 'Math', property: 'random', message: pureMessage }, { object: 'Date', property: 'now', message: pureMessage }],
+      'no-restricted-syntax': ['error', { selector: "NewExpression[callee.name='Date'][arguments.length=0]", message: pureMessage }],
+    },
+  },
+  {
+    files: ['server/cli/**', 'tests/run.ts', 'tests/bench/**', 'samples/**'],
+    rules: { 'no-console': 'off' },
+  },
+);
