@@ -1,0 +1,2 @@
+export * from './channels';
+export * from './chunk';
