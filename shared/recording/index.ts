@@ -1,2 +1,3 @@
 export * from './channels';
 export * from './chunk';
+export * from './csv';
