@@ -28,19 +28,20 @@ export interface RouteContract<
   readonly binary?: string;
 }
 
-/** Keeps the literal types of a contract. */
+/** Keeps the literal types of a contract; what was left out reads as undefined. */
 export function route<
   const Id extends string,
   P extends Schema | undefined = undefined,
   Q extends Schema | undefined = undefined,
   B extends Schema | undefined = undefined,
   R extends Schema | undefined = undefined,
->(contract: RouteContract<Id, P, Q, B, R>): RouteContract<Id, P, Q, B, R> {
-  return contract;
+>(contract: RouteContract<Id, P, Q, B, R>): RouteContract<Id, P, Q, B, R> & { readonly params: P; readonly query: Q; readonly body: B; readonly response: R } {
+  return contract as ReturnType<typeof route<Id, P, Q, B, R>>;
 }
 
-type Out<S> = S extends z.ZodType ? z.output<S> : undefined;
-type In<S> = S extends z.ZodType ? z.input<S> : undefined;
+// The fields of a contract are optional, so their types carry an undefined that says nothing: it is taken off first.
+type Out<S> = [Exclude<S, undefined>] extends [never] ? undefined : Exclude<S, undefined> extends infer T extends z.ZodType ? z.output<T> : undefined;
+type In<S> = [Exclude<S, undefined>] extends [never] ? undefined : Exclude<S, undefined> extends infer T extends z.ZodType ? z.input<T> : undefined;
 
 /** Parsed values, as the server's handler sees them. */
 export type ParamsOf<C extends RouteContract> = Out<C['params']>;

@@ -1,0 +1,25 @@
+import { isRouteErrorResponse, useRouteError } from 'react-router-dom';
+import { asProblem } from '../lib/api-problem';
+import { Button, ButtonLink } from '../ui/Button';
+import { Page, Section } from '../ui/Page';
+import { ProblemNote } from '../ui/ProblemNote';
+import { NotFoundPage } from './NotFoundPage';
+
+/** What stands in place of a page that failed. */
+export function PageError() {
+  const error = useRouteError();
+  if (isRouteErrorResponse(error) && error.status === 404) return <NotFoundPage />;
+  if (asProblem(error).status === 404) return <NotFoundPage />;
+  // A page's own code may be gone after the server was updated: loading again fetches the new one.
+  return (
+    <Page title="This page could not be opened" margin="out of order">
+      <Section>
+        <ProblemNote error={error} />
+        <div className="mt-6 flex gap-3">
+          <Button tone="main" onClick={() => window.location.reload()}>Load it again</Button>
+          <ButtonLink to="/">To Today</ButtonLink>
+        </div>
+      </Section>
+    </Page>
+  );
+}
