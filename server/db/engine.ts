@@ -1,0 +1,129 @@
+/**
+ * The database: embedded (PGlite) by default, an existing PostgreSQL when a `databaseUrl` is given. One schema, one
+ * `Database` type for both.
+ *
+ * The embedded engine is one connection: inside `db.transaction(async (tx) => ...)` only `tx` may be used, a query on
+ * `db` in there would wait for ever.
+ */
+import { existsSync, renameSync, rmSync } from 'node:fs';
+import { join } from 'node:path';
+import { PGlite, type PGliteOptions } from '@electric-sql/pglite';
+import { drizzle as drizzleNodePostgres } from 'drizzle-orm/node-postgres';
+import { migrate as migrateNodePostgres } from 'drizzle-orm/node-postgres/migrator';
+import { drizzle as drizzlePglite } from 'drizzle-orm/pglite';
+import { migrate as migratePglite } from 'drizzle-orm/pglite/migrator';
+import pg from 'pg';
+import { StartRefusal } from '../start-refusal';
+import { lockDataDirectory } from './data-lock';
+import { durableOptions } from './durable-node-fs';
+import { type Database, migrationsFolder, refuseNewerData } from './migrate';
+import * as schema from './schema';
+
+export type { Database } from './migrate';
+
+export interface OpenDatabase {
+  db: Database;
+  kind: 'pglite' | 'postgresql';
+  /** @throws StartRefusal DATA_NEWER */
+  migrate(): Promise<void>;
+  /** The embedded database as one archive, for snapshots; null on PostgreSQL. */
+  dump(): Promise<Blob | null>;
+  close(): Promise<void>;
+}
+
+export interface DatabasePlace {
+  /** Absolute path; holds the embedded database and files. */
+  dataDir: string;
+  databaseUrl?: string | undefined;
+  /** Embedded database in memory, for tests and one-shot commands; optionally from an archive that `dump` made. */
+  memory?: boolean | Blob;
+}
+
+/** Parameters of bytea travel in binary, results are decoded at native speed: PGlite's own way is hex made in JavaScript. */
+const binaryBytes: PGliteOptions = {
+  serializers: { 17: (value: unknown) => value as string },
+  parsers: { 17: (text: string) => Buffer.from(text.slice(2), 'hex') },
+};
+
+/** Any number; the same in every version, so that servers that start together migrate one after another. */
+const migrationLock = 4_680_001;
+
+/** @throws StartRefusal DATA_READ_ONLY, DATA_IN_USE, DATABASE_GONE */
+export async function openDatabase(place: DatabasePlace): Promise<OpenDatabase> {
+  if (place.memory) return embedded(await openInMemory(place.memory), () => undefined);
+  if (place.databaseUrl !== undefined) return openPostgres(place.databaseUrl);
+  const unlock = lockDataDirectory(place.dataDir);
+  try {
+    return embedded(await openOnDisk(place.dataDir), unlock);
+  } catch (error) {
+    unlock();
+    throw error;
+  }
+}
+
+async function openInMemory(archive: boolean | Blob): Promise<PGlite> {
+  return PGlite.create({ ...binaryBytes, ...(archive instanceof Blob ? { loadDataDir: archive } : {}) });
+}
+
+async function openOnDisk(dataDir: string): Promise<PGlite> {
+  const directory = join(dataDir, 'database');
+  if (!existsSync(directory)) {
+    // Made beside and moved in whole: a first start that is killed halfway leaves nothing that looks like a database.
+    const unfinished = join(dataDir, 'database.unfinished');
+    rmSync(unfinished, { recursive: true, force: true });
+    const made = await PGlite.create({ ...binaryBytes, ...durableOptions(unfinished) });
+    await made.close();
+    renameSync(unfinished, directory);
+  }
+  return PGlite.create({ ...binaryBytes, ...durableOptions(directory) });
+}
+
+function embedded(client: PGlite, unlock: () => void): OpenDatabase {
+  const inner = drizzlePglite(client, { schema });
+  // Both engines derive from one class; only the type of raw results differs, and raw results are not used.
+  const db = inner as unknown as Database;
+  return {
+    db,
+    kind: 'pglite',
+    async migrate() {
+      await refuseNewerData(db);
+      await migratePglite(inner, { migrationsFolder });
+    },
+    dump: () => client.dumpDataDir('none'),
+    async close() {
+      await client.close();
+      unlock();
+    },
+  };
+}
+
+async function openPostgres(databaseUrl: string): Promise<OpenDatabase> {
+  const pool = new pg.Pool({ connectionString: databaseUrl, max: 10 });
+  // An idle connection that the server closes is replaced at the next query; without a listener it would end the process.
+  pool.on('error', () => undefined);
+  try {
+    await pool.query('select 1');
+  } catch (error) {
+    await pool.end();
+    throw new StartRefusal('DATABASE_GONE', 'The PostgreSQL server of DATABASE_URL does not answer or refuses the sign-in.', 'Check DATABASE_URL and that the server runs, or unset it to use the embedded database.', { cause: error });
+  }
+  const inner = drizzleNodePostgres(pool, { schema });
+  const db = inner as unknown as Database;
+  return {
+    db,
+    kind: 'postgresql',
+    async migrate() {
+      await refuseNewerData(db);
+      const holder = await pool.connect();
+      try {
+        await holder.query('select pg_advisory_lock($1)', [migrationLock]);
+        await migrateNodePostgres(inner, { migrationsFolder });
+      } finally {
+        await holder.query('select pg_advisory_unlock($1)', [migrationLock]).catch(() => undefined);
+        holder.release();
+      }
+    },
+    dump: async () => null,
+    close: () => pool.end(),
+  };
+}
