@@ -1,4 +1,5 @@
 import { useQueryClient } from '@tanstack/react-query';
+import { useRevalidator } from 'react-router-dom';
 import { SignInForm } from '../features/entrance';
 import { meQuery, useMe } from '../lib/me';
 import { signInLapse, useSignInLapse } from '../lib/sign-in-lapse';
@@ -9,6 +10,7 @@ export function LapsedDialog() {
   const me = useMe();
   const lapsed = useSignInLapse();
   const queries = useQueryClient();
+  const { revalidate } = useRevalidator();
   const back = async () => {
     // Somebody else signing in here must not see what stood on the page.
     const before = me.id;
@@ -19,6 +21,8 @@ export function LapsedDialog() {
     }
     signInLapse.set(false);
     await queries.invalidateQueries();
+    // A page that failed because of the sign-in is opened again.
+    await revalidate();
   };
   return (
     <Dialog

@@ -1,4 +1,4 @@
-import { useEffect } from 'react';
+import { Suspense, useEffect } from 'react';
 import { NavLink, Link, Outlet, ScrollRestoration, useLocation, useNavigation } from 'react-router-dom';
 import type { LabRole } from '@shared/api/common';
 import { useMe } from '../lib/me';
@@ -6,6 +6,7 @@ import { BarSlots } from '../ui/bar-slots';
 import { classNames } from '../ui/class-names';
 import { LampMenu } from '../ui/LampMenu';
 import { pageTurns } from '../ui/page-turns';
+import { PageWaiting } from '../ui/PageWaiting';
 import { Wordmark } from '../ui/Wordmark';
 import { AccountMenu } from './AccountMenu';
 import { LapsedDialog } from './LapsedDialog';
@@ -61,7 +62,7 @@ export function Shell() {
             {turning ? <div role="progressbar" aria-label="Turning the page" className="waiting-line absolute inset-x-0 -bottom-px h-0.5 bg-ink" /> : null}
           </header>
           <main id="page" tabIndex={-1} className="flex-1 flex flex-col">
-            <Outlet />
+            <Suspense key={pathname} fallback={<PageWaiting />}><Outlet /></Suspense>
           </main>
           <LapsedDialog />
           <ScrollRestoration />

@@ -1,6 +1,13 @@
 import type { QueryClient } from '@tanstack/react-query';
 import { createBrowserRouter, redirect, type LoaderFunctionArgs } from 'react-router-dom';
+import { accountRoutes } from '../features/account';
+import { deviceRoutes } from '../features/devices';
 import { entranceRoutes } from '../features/entrance';
+import { outboxRoutes } from '../features/outbox';
+import { peopleRoutes } from '../features/people';
+import { rigRoutes } from '../features/rigs';
+import { sessionRoutes } from '../features/sessions';
+import { studyRoutes } from '../features/studies';
 import { todayRoutes } from '../features/today';
 import { asProblem } from '../lib/api-problem';
 import { entranceQuery, meQuery } from '../lib/me';
@@ -40,6 +47,13 @@ export function createPages(queries: QueryClient) {
           ErrorBoundary: PageError,
           children: [
             ...todayRoutes,
+            ...studyRoutes,
+            ...sessionRoutes,
+            ...rigRoutes,
+            ...deviceRoutes,
+            ...peopleRoutes,
+            ...outboxRoutes,
+            ...accountRoutes,
             { path: '*', Component: NotFoundPage },
           ],
         },

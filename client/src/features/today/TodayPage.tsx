@@ -1,4 +1,20 @@
+import { useMe } from '../../lib/me';
 import { Page } from '../../ui/Page';
+import { PanelBoundary } from '../../ui/PanelBoundary';
+import { AdministratorToday } from './AdministratorToday';
+import { ClinicianToday } from './ClinicianToday';
+import { RoomToday } from './RoomToday';
+
+const weekday = new Intl.DateTimeFormat('en-GB', { weekday: 'long', day: 'numeric', month: 'long' });
+
+/** What waits for the reader, by what they come for. */
 export function TodayPage() {
-  return <Page title="Today">{null}</Page>;
+  const me = useMe();
+  return (
+    <Page title="Today" lead={weekday.format(new Date())} margin={me.demo ? 'demo lab, invented people' : undefined}>
+      {me.role === 'clinician' ? <ClinicianToday /> : null}
+      {me.role === 'administrator' ? <AdministratorToday /> : null}
+      {me.role === 'clinician' || (me.role === 'administrator' && me.memberships.length === 0) ? null : <PanelBoundary><RoomToday /></PanelBoundary>}
+    </Page>
+  );
 }
