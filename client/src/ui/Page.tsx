@@ -6,6 +6,8 @@ const SPREAD = 'md:grid md:grid-cols-[8.5rem_minmax(0,1fr)] md:gap-x-9';
 
 interface PageProps {
   title: string;
+  /** The title as it is set on the page, where parts of it must not break; the same words. */
+  heading?: ReactNode;
   /** What the browser's tab says, when the heading alone would not tell pages apart. */
   tab?: string;
   /** One line under the title. */
@@ -17,7 +19,7 @@ interface PageProps {
 }
 
 /** A page of the book: a wide left margin behind a double rule, the heading, then sections. */
-export function Page({ title, tab, lead, margin, actions, children }: PageProps) {
+export function Page({ title, heading, tab, lead, margin, actions, children }: PageProps) {
   return (
     <article className="page-sheet relative flex-1 w-full max-w-[88rem] px-5 md:px-6 pb-16">
       <title>{`${tab ?? title} · Tautbook`}</title>
@@ -26,7 +28,7 @@ export function Page({ title, tab, lead, margin, actions, children }: PageProps)
         <MarginNote className="md:pt-2">{margin}</MarginNote>
         <div className="flex flex-wrap items-start justify-between gap-x-8 gap-y-3">
           <div className="min-w-0">
-            <PageTitle>{title}</PageTitle>
+            <PageTitle>{heading ?? title}</PageTitle>
             {lead ? <div className="text-soft text-small mt-1">{lead}</div> : null}
           </div>
           {actions ? <div className="no-print flex flex-wrap gap-3">{actions}</div> : null}
@@ -38,7 +40,7 @@ export function Page({ title, tab, lead, margin, actions, children }: PageProps)
 }
 
 /** The heading takes the focus when a page was turned to, so that a screen reader starts there. */
-export function PageTitle({ children }: { children: string }) {
+export function PageTitle({ children }: { children: ReactNode }) {
   const heading = useRef<HTMLHeadingElement>(null);
   useEffect(() => {
     if (pageTurns.take()) heading.current?.focus({ preventScroll: true });

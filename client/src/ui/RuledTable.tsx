@@ -10,6 +10,8 @@ export interface RuledColumn<Row> {
   lead?: boolean;
   /** On a narrow screen the head is left out where the value speaks for itself. */
   plain?: boolean;
+  /** Nothing to say in this row: a dash on wide screens, left out on narrow ones. */
+  blank?: (row: Row) => boolean;
   /** CSS width on wide screens. */
   width?: string;
 }
@@ -45,9 +47,9 @@ export function RuledTable<Row>({ caption, columns, rows, rowKey, marked }: Rule
         {rows.map((row) => (
           <tr key={rowKey(row)} role="row" className={classNames('border-b border-rule max-sm:flex max-sm:flex-wrap max-sm:gap-x-5 max-sm:gap-y-0.5 max-sm:py-2.5', marked?.(row) && 'bg-sheet shadow-none outline-0 [box-shadow:inset_3px_0_0_var(--ink)] sm:[&>td:first-child]:pl-3 max-sm:pl-3')}>
             {columns.map((column) => (
-              <td key={column.key} role="cell" className={classNames('align-top sm:py-3 sm:pr-5 last:pr-0 max-sm:text-small', column.align === 'right' && 'sm:text-right', column.lead && 'max-sm:basis-full max-sm:text-body')}>
+              <td key={column.key} role="cell" className={classNames('align-top sm:py-3 sm:pr-5 last:pr-0 max-sm:text-small', column.align === 'right' && 'sm:text-right', column.lead && 'max-sm:basis-full max-sm:text-body', column.blank?.(row) && 'max-sm:hidden')}>
                 {!column.lead && !column.plain && column.head !== '' ? <span aria-hidden className="sm:hidden text-soft">{column.head.toLowerCase()} </span> : null}
-                {column.cell(row)}
+                {column.blank?.(row) ? <Blank /> : column.cell(row)}
               </td>
             ))}
           </tr>
@@ -56,3 +58,5 @@ export function RuledTable<Row>({ caption, columns, rows, rowKey, marked }: Rule
     </table>
   );
 }
+
+const Blank = () => <span className="text-faint"><span aria-hidden>–</span><span className="sr-only">none</span></span>;

@@ -24,7 +24,7 @@ export function SignInList() {
       plain: true,
       width: '9rem',
       align: 'right',
-      cell: (row) => (row.here ? <StateWord tone="live">here</StateWord> : <Button tone="quiet" busy={end.isPending} onClick={() => end.mutate(row.token)} aria-label={`End the sign-in of ${wallTime(row.startedAt)}`}>End</Button>),
+      cell: (row) => (row.here ? <StateWord tone="live">here</StateWord> : <Button tone="quiet" busy={end.isPending} onClick={() => end.mutate(row.token)} about={`the sign-in of ${wallTime(row.startedAt)}`}>End</Button>),
     },
   ];
   return (

@@ -72,7 +72,7 @@ export function DevicesPage() {
       plain: true,
       width: '6rem',
       align: 'right' as const,
-      cell: (row: Device) => (row.state === 'revoked' ? null : <Button tone="quiet" onClick={() => setRevoking(row)} aria-label={`Revoke ${row.name}`}>Revoke</Button>),
+      cell: (row: Device) => (row.state === 'revoked' ? null : <Button tone="quiet" onClick={() => setRevoking(row)} about={row.name}>Revoke</Button>),
     }] : []),
   ];
 

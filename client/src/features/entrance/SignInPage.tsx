@@ -60,7 +60,7 @@ function DemoSignIns({ entries, onSignedIn }: DemoSignInsProps) {
         {entries.map((entry) => (
           <li key={entry.email} className="border-b border-rule py-2.5 flex flex-wrap items-baseline justify-between gap-x-5">
             <span><span className="font-semibold">{entry.name}</span> <span className="text-small text-soft">{ROLE_WORDS[entry.role]}, {entry.email}</span></span>
-            <Button tone="quiet" busy={enter.isPending} aria-label={`Sign in as ${entry.name}, ${ROLE_WORDS[entry.role]}`} onClick={() => enter.mutate(entry)}>Sign in</Button>
+            <Button tone="quiet" busy={enter.isPending} about={`as ${entry.name}, ${ROLE_WORDS[entry.role]}`} onClick={() => enter.mutate(entry)}>Sign in</Button>
           </li>
         ))}
       </ul>

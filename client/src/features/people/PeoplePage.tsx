@@ -43,10 +43,10 @@ export function PeoplePage() {
       align: 'right',
       cell: (row) => (row.id === me.id ? null : (
         <span className="inline-flex gap-x-4">
-          <Button tone="quiet" onClick={() => setOpen({ what: 'role', person: row })} aria-label={`Change the role of ${row.name}`}>Change role</Button>
+          <Button tone="quiet" onClick={() => setOpen({ what: 'role', person: row })} about={`of ${row.name}`}>Change role</Button>
           {row.state === 'closed'
-            ? <Button tone="quiet" className="font-normal" onClick={() => setOpen({ what: 'reopen', person: row })} aria-label={`Open the access of ${row.name} again`}>Open again</Button>
-            : <Button tone="quiet" className="font-normal" onClick={() => setOpen({ what: 'close', person: row })} aria-label={`Close the access of ${row.name}`}>Close access</Button>}
+            ? <Button tone="faint" onClick={() => setOpen({ what: 'reopen', person: row })} about={`for ${row.name}`}>Open again</Button>
+            : <Button tone="faint" onClick={() => setOpen({ what: 'close', person: row })} about={`of ${row.name}`}>Close access</Button>}
         </span>
       )),
     },

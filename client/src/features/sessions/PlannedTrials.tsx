@@ -28,7 +28,7 @@ export function PlannedTrials({ form, study }: PlannedTrialsProps) {
         <TextField className="w-28" label="Times each" type="number" min={1} max={20} value={repeats} onChange={(event) => setRepeats(event.target.value)} />
         <Button onClick={fill}>Add every task under every condition ({block.length * times})</Button>
         <Button tone="quiet" className="mb-2" onClick={one}>Add one trial</Button>
-        {rows.fields.length > 0 ? <Button tone="quiet" className="mb-2 font-normal" onClick={() => rows.replace([])}>Clear the sheet</Button> : null}
+        {rows.fields.length > 0 ? <Button tone="faint" className="mb-2" onClick={() => rows.replace([])}>Clear the sheet</Button> : null}
       </div>
       {rows.fields.length === 0 ? (
         <Empty title="An empty run sheet">Add trials now, or one by one while the session runs.</Empty>
@@ -44,9 +44,9 @@ export function PlannedTrials({ form, study }: PlannedTrialsProps) {
                 {study.conditions.map((condition) => <option key={condition.id} value={condition.id}>{conditionName(condition)}</option>)}
               </SelectField>
               <span className="flex gap-x-4">
-                <Button tone="quiet" className="font-normal" disabled={index === 0} onClick={() => rows.move(index, index - 1)} aria-label={`Move trial ${index + 1} up`}>Up</Button>
-                <Button tone="quiet" className="font-normal" disabled={index === rows.fields.length - 1} onClick={() => rows.move(index, index + 1)} aria-label={`Move trial ${index + 1} down`}>Down</Button>
-                <Button tone="quiet" className="font-normal" onClick={() => rows.remove(index)} aria-label={`Take trial ${index + 1} out`}>Take out</Button>
+                <Button tone="faint" disabled={index === 0} onClick={() => rows.move(index, index - 1)} about={`with trial ${index + 1}`}>Up</Button>
+                <Button tone="faint" disabled={index === rows.fields.length - 1} onClick={() => rows.move(index, index + 1)} about={`with trial ${index + 1}`}>Down</Button>
+                <Button tone="faint" onClick={() => rows.remove(index)} about={`trial ${index + 1}`}>Take out</Button>
               </span>
             </li>
           ))}

@@ -15,6 +15,8 @@ import { conditionName, TrialName, TrialStateWord } from './TrialWords';
 
 type Open = { what: 'outcome' | 'remove'; trial: TrialSummary } | { what: 'add' } | null;
 
+const unrecorded = (trial: TrialSummary) => trial.durationS === null;
+
 /** The trials of a session in their order, each with where it stands and what can be done with it. */
 export function RunSheet({ session, runs }: { session: Session; runs: boolean }) {
   const [open, setOpen] = useState<Open>(null);
@@ -26,9 +28,9 @@ export function RunSheet({ session, runs }: { session: Session; runs: boolean })
   const columns: RuledColumn<TrialSummary>[] = [
     { key: 'trial', head: 'Trial', lead: true, cell: (trial) => <TrialName trial={trial} /> },
     { key: 'condition', head: 'Condition', plain: true, width: '11rem', cell: (trial) => conditionName(trial.condition) },
-    { key: 'length', head: 'Length', plain: true, width: '6rem', align: 'right', cell: (trial) => (trial.durationS === null ? <Blank /> : duration(trial.durationS)) },
-    { key: 'flags', head: 'Flags', width: '5rem', align: 'right', cell: (trial) => (trial.durationS === null ? <Blank /> : count(trial.flags)) },
-    { key: 'notes', head: 'Notes', width: '5rem', align: 'right', cell: (trial) => (trial.durationS === null ? <Blank /> : count(trial.notes)) },
+    { key: 'length', head: 'Length', plain: true, width: '6rem', align: 'right', blank: unrecorded, cell: (trial) => duration(trial.durationS ?? Number.NaN) },
+    { key: 'flags', head: 'Flags', width: '5rem', align: 'right', blank: unrecorded, cell: (trial) => count(trial.flags) },
+    { key: 'notes', head: 'Notes', width: '5rem', align: 'right', blank: unrecorded, cell: (trial) => count(trial.notes) },
     {
       key: 'state',
       head: 'Outcome',
@@ -45,17 +47,17 @@ export function RunSheet({ session, runs }: { session: Session; runs: boolean })
       key: 'do',
       head: 'To do',
       plain: true,
-      width: '11rem',
+      width: '13rem',
       align: 'right' as const,
       cell: (trial: TrialSummary) => (
         <span className="inline-flex gap-x-4">
           {trial.state === 'stopped' || trial.state === 'judged' ? (
-            <Button tone="quiet" onClick={() => setOpen({ what: 'outcome', trial })} aria-label={`${trial.state === 'stopped' ? 'Give' : 'Change'} the outcome of trial ${trial.number}`}>
-              {trial.state === 'stopped' ? 'Give outcome' : 'Change'}
+            <Button onClick={() => setOpen({ what: 'outcome', trial })} tone={trial.state === 'stopped' ? 'quiet' : 'faint'} about={`of trial ${trial.number}`}>
+              {trial.state === 'stopped' ? 'Give outcome' : 'Change outcome'}
             </Button>
           ) : null}
           {trial.state === 'planned' || trial.state === 'stopped' || trial.state === 'judged' ? (
-            <Button tone="quiet" className="font-normal" onClick={() => setOpen({ what: 'remove', trial })} aria-label={`Take trial ${trial.number} out`}>Take out</Button>
+            <Button tone="faint" onClick={() => setOpen({ what: 'remove', trial })} about={`trial ${trial.number}`}>Take out</Button>
           ) : null}
         </span>
       ),
@@ -80,6 +82,3 @@ export function RunSheet({ session, runs }: { session: Session; runs: boolean })
     </Section>
   );
 }
-
-/** Nothing recorded yet: a dash to the eye, words to the ear. */
-const Blank = () => <span className="text-faint"><span aria-hidden>–</span><span className="sr-only">not recorded</span></span>;

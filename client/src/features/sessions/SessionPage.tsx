@@ -26,11 +26,12 @@ export function SessionPage() {
   const role = useMyRoleIn(session.studyId)?.role;
   const runs = role === 'lead' || role === 'operator';
   const running = session.state === 'planned' || session.state === 'open';
-  const visit = `${visitWords(session.visit)}`;
+  const visit = visitWords(session.visit);
 
   return (
     <Page
       title={`Participant ${session.participantCode}, ${visit}`}
+      heading={<>Participant <span className="whitespace-nowrap">{session.participantCode}</span>, {visit}</>}
       lead={`${session.studyTitle} · ${session.rigTitle}, revision ${session.rigRevision} · planned for ${wallTime(session.plannedAt)}`}
       margin={<SessionStateWord state={session.state} />}
       actions={(

@@ -34,7 +34,7 @@ export function LabStudies() {
             plain: true,
             width: '13rem',
             align: 'right',
-            cell: (row) => (row.member ? <StateWord>you are a member</StateWord> : <Button tone="quiet" aria-label={`Add yourself to ${row.title}`} onClick={() => setAsked(row)}>Add yourself as a reader</Button>),
+            cell: (row) => (row.member ? <StateWord>you are a member</StateWord> : <Button tone="quiet" about={`of ${row.title}`} onClick={() => setAsked(row)}>Add yourself as a reader</Button>),
           },
         ]}
       />

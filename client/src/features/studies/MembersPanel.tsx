@@ -31,8 +31,8 @@ export function MembersPanel({ study, edits }: { study: Study; edits: boolean })
       align: 'right' as const,
       cell: (row: Member) => (
         <span className="inline-flex gap-x-4">
-          <Button tone="quiet" onClick={() => setOpen({ what: 'change', member: row })} aria-label={`Change ${row.name}`}>Change</Button>
-          <Button tone="quiet" className="font-normal" onClick={() => setOpen({ what: 'remove', member: row })} aria-label={`Take ${row.name} out`}>Take out</Button>
+          <Button tone="quiet" onClick={() => setOpen({ what: 'change', member: row })} about={row.name}>Change</Button>
+          <Button tone="faint" onClick={() => setOpen({ what: 'remove', member: row })} about={row.name}>Take out</Button>
         </span>
       ),
     }] : []),

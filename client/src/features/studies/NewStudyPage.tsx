@@ -53,7 +53,7 @@ export function NewStudyPage() {
               <li key={field.id} className="border-b border-rule py-2.5 flex flex-wrap items-start gap-x-6 gap-y-2">
                 <TextField className="w-24" label={<>Code<span className="sr-only"> of condition {index + 1}</span></>} error={errors.conditions?.[index]?.blindCode?.message} {...form.register(`conditions.${index}.blindCode`)} />
                 <TextField className="flex-1 min-w-48" label={<>Label<span className="sr-only"> of condition {index + 1}</span></>} error={errors.conditions?.[index]?.label?.message} {...form.register(`conditions.${index}.label`)} />
-                {conditions.fields.length > 1 ? <Button tone="quiet" className="font-normal mt-7" onClick={() => conditions.remove(index)} aria-label={`Take condition ${index + 1} out`}>Take out</Button> : null}
+                {conditions.fields.length > 1 ? <Button tone="faint" className="mt-7" onClick={() => conditions.remove(index)} about={`condition ${index + 1}`}>Take out</Button> : null}
               </li>
             ))}
           </ul>
@@ -65,7 +65,7 @@ export function NewStudyPage() {
                 <TextField className="w-24" label={<>Code<span className="sr-only"> of task {index + 1}</span></>} error={errors.tasks?.[index]?.code?.message} {...form.register(`tasks.${index}.code`)} />
                 <TextField className="flex-1 min-w-48" label={<>Title<span className="sr-only"> of task {index + 1}</span></>} error={errors.tasks?.[index]?.title?.message} {...form.register(`tasks.${index}.title`)} />
                 <TextField className="w-36" label={<>Time limit, s<span className="sr-only">, of task {index + 1}</span></>} inputMode="numeric" placeholder="none" error={errors.tasks?.[index]?.timeLimitS?.message} {...form.register(`tasks.${index}.timeLimitS`, { setValueAs: limit })} />
-                {tasks.fields.length > 1 ? <Button tone="quiet" className="font-normal mt-7" onClick={() => tasks.remove(index)} aria-label={`Take task ${index + 1} out`}>Take out</Button> : null}
+                {tasks.fields.length > 1 ? <Button tone="faint" className="mt-7" onClick={() => tasks.remove(index)} about={`task ${index + 1}`}>Take out</Button> : null}
               </li>
             ))}
           </ul>

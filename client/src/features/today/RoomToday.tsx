@@ -28,7 +28,7 @@ const whose: RuledColumn<TodayTrial> = {
   ),
 };
 const name: RuledColumn<TodayTrial> = { key: 'trial', head: 'Trial', lead: true, cell: (row) => <TrialName trial={row} /> };
-const length: RuledColumn<TodayTrial> = { key: 'length', head: 'Length', plain: true, width: '7rem', align: 'right', cell: (row) => (row.durationS === null ? '' : duration(row.durationS)) };
+const length: RuledColumn<TodayTrial> = { key: 'length', head: 'Length', plain: true, width: '7rem', align: 'right', blank: (row) => row.durationS === null, cell: (row) => duration(row.durationS ?? Number.NaN) };
 const flags: RuledColumn<TodayTrial> = { key: 'flags', head: 'Flags', width: '5rem', align: 'right', cell: (row) => count(row.flags) };
 const notes: RuledColumn<TodayTrial> = { key: 'notes', head: 'Notes', width: '5rem', align: 'right', cell: (row) => count(row.notes) };
 const state: RuledColumn<TodayTrial> = { key: 'state', head: 'Outcome', plain: true, width: '10rem', align: 'right', cell: (row) => <TrialStateWord trial={row} /> };
@@ -45,7 +45,7 @@ export function RoomToday() {
     plain: true,
     width: '9rem',
     align: 'right',
-    cell: (row) => <Button tone="quiet" aria-label={`Give the outcome of trial ${row.number}, ${row.session.participantCode}`} onClick={() => setJudging(row)}>Give outcome</Button>,
+    cell: (row) => <Button tone="quiet" about={`of trial ${row.number}, ${row.session.participantCode}`} onClick={() => setJudging(row)}>Give outcome</Button>,
   };
   return (
     <>
