@@ -1,25 +1,19 @@
-/**
- * Codes with which the numerics refuse a request. They are part of the contract of `calc`: never renamed, never reused.
- *
- * - BAD_REQUEST     the request does not have the shape asked for (wrong length, not a number, not a unit quaternion)
- * - BAD_RIG         the rig file is unsound
- * - SINGULAR        the pose or the data leave a direction undetermined
- * - NO_CONVERGENCE  an iteration ended without an answer
- * - TOO_SHORT       fewer values than the method needs
- * - UNDEFINED       enough values, but the quantity does not exist for them (division by zero, constant signal)
- */
-export const numericErrorCodes = [
-  'BAD_REQUEST',
-  'BAD_RIG',
-  'SINGULAR',
-  'NO_CONVERGENCE',
-  'TOO_SHORT',
-  'UNDEFINED',
-] as const;
+/** Why a numeric request could not be answered. The codes are public: `calc` prints them. */
+export type NumericErrorCode =
+  /** The rig file does not describe a rig. */
+  | 'BAD_RIG'
+  /** An argument has the wrong shape, is not finite, or contradicts another. */
+  | 'BAD_REQUEST'
+  /** The answer exists but is not unique: a matrix lost rank. */
+  | 'SINGULAR'
+  /** An iteration did not settle. */
+  | 'NO_CONVERGENCE'
+  /** Fewer values than the method needs. */
+  | 'TOO_SHORT'
+  /** The quantity has no value for this input (a ratio over zero, a direction of nothing). */
+  | 'UNDEFINED';
 
-export type NumericErrorCode = (typeof numericErrorCodes)[number];
-
-/** A refusal of the numerics: a code for programs, a plain sentence with a way out for people. */
+/** A numeric request that has no answer, with a public code, a plain sentence and a way out in the sentence. */
 export class NumericError extends Error {
   override readonly name = 'NumericError';
 
