@@ -1,3 +1,6 @@
 export * from './channels';
 export * from './chunk';
 export * from './csv';
+export * from './digest';
+export * from './pyramid';
+export * from './recording-summary';
