@@ -3,13 +3,14 @@ import { useState } from 'react';
 import { RouterProvider } from 'react-router-dom';
 import { createQueries } from './query-client';
 import { createPages } from './router';
+import { tellCaught } from './tell-caught';
 
 export function App() {
   const [queries] = useState(createQueries);
   const [pages] = useState(() => createPages(queries));
   return (
     <QueryClientProvider client={queries}>
-      <RouterProvider router={pages} />
+      <RouterProvider router={pages} onError={tellCaught} />
     </QueryClientProvider>
   );
 }

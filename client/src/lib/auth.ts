@@ -2,7 +2,8 @@
 import { createAuthClient } from 'better-auth/client';
 import { ApiProblem, networkProblem } from './api-problem';
 
-const client = createAuthClient({ basePath: '/api/auth' });
+/** The page's own fetch at the time of the call, not the one that was there when this file was read. */
+const client = createAuthClient({ basePath: '/api/auth', fetchOptions: { customFetchImpl: (input, init) => fetch(input, init) } });
 
 interface Answer<T> {
   data: T | null;

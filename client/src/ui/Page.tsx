@@ -56,13 +56,15 @@ interface SectionProps {
   children: ReactNode;
   id?: string;
   className?: string;
+  /** For few columns: the eye should not have to cross the whole page. */
+  narrow?: boolean;
 }
 
-export function Section({ title, note, actions, children, id, className }: SectionProps) {
+export function Section({ title, note, actions, children, id, className, narrow = false }: SectionProps) {
   return (
     <section id={id} aria-label={title} className={classNames(SPREAD, 'mt-9 scroll-mt-6', className)}>
       <MarginNote className="md:pt-1">{note}</MarginNote>
-      <div className="min-w-0">
+      <div className={classNames('min-w-0', narrow && 'max-w-[54rem]')}>
         {title || actions ? (
           <div className="flex flex-wrap items-baseline justify-between gap-x-6 gap-y-1 mb-2">
             {title ? <h2>{title}</h2> : null}

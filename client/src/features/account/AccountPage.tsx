@@ -11,7 +11,7 @@ export function AccountPage() {
   const me = useMe();
   return (
     <Page title="Account" lead={me.email}>
-      <Section>
+      <Section narrow>
         <Facts>
           <Fact name="Role in the lab">{ROLE_WORDS[me.role]}</Fact>
           <Fact name="Studies">
@@ -23,7 +23,7 @@ export function AccountPage() {
       </Section>
       <Section title="Name" note="beside what you write"><NameForm name={me.name} /></Section>
       <Section title="Password" note="ends all other sign-ins"><PasswordForm /></Section>
-      <Section title="Where you are signed in"><PanelBoundary><SignInList /></PanelBoundary></Section>
+      <Section narrow title="Where you are signed in"><PanelBoundary><SignInList /></PanelBoundary></Section>
     </Page>
   );
 }

@@ -6,7 +6,7 @@ export { SignInForm } from './SignInForm';
 /** Pages of someone who is not signed in. */
 export const entranceRoutes: RouteObject[] = [
   {
-    lazy: { Component: async () => (await import('./EntranceFrame')).EntranceFrame },
+    lazy: async () => ({ Component: (await import('./EntranceFrame')).EntranceFrame }),
     children: [
       page('/sign-in', async () => (await import('./SignInPage')).SignInPage),
       page('/forgot', async () => (await import('./ForgotPage')).ForgotPage),

@@ -57,8 +57,8 @@ export function PlanSessionPage() {
         <Section><Empty title="No rig has been imported yet" action={<ButtonLink tone="main" to="/rigs/import">Import a rig file</ButtonLink>}>A recording points at the revision of the rig it was made on.</Empty></Section>
       ) : (
         <form noValidate onSubmit={submit}>
-          <Section title="Visit">
-            <div className="grid gap-x-8 gap-y-4 sm:grid-cols-3 max-w-[56rem]">
+          <Section narrow title="Visit">
+            <div className="grid gap-x-8 gap-y-4 sm:grid-cols-3">
               <SelectField label="Participant" error={errors.participantId?.message} help={<Link to={`/studies/${studyId}#participants`} className="link">Add one</Link>} {...form.register('participantId')}>
                 <option value="">Choose</option>
                 {participants.map((participant) => <option key={participant.id} value={participant.id}>{participant.code}, visit {participant.sessions + 1}</option>)}

@@ -23,7 +23,7 @@ export function PlannedTrials({ form, study }: PlannedTrialsProps) {
   const fill = () => rows.append(Array.from({ length: times }, () => block).flat(), { shouldFocus: false });
   const one = () => rows.append({ taskId: study.tasks[0]?.id ?? '', conditionId: study.conditions[0]?.id ?? '' });
   return (
-    <Section title="Trials" note={counted(rows.fields.length, 'trial')}>
+    <Section narrow title="Trials" note={counted(rows.fields.length, 'trial')}>
       <div className="flex flex-wrap items-end gap-x-5 gap-y-3 mb-4">
         <TextField className="w-28" label="Times each" type="number" min={1} max={20} value={repeats} onChange={(event) => setRepeats(event.target.value)} />
         <Button onClick={fill}>Add every task under every condition ({block.length * times})</Button>
@@ -33,7 +33,7 @@ export function PlannedTrials({ form, study }: PlannedTrialsProps) {
       {rows.fields.length === 0 ? (
         <Empty title="An empty run sheet">Add trials now, or one by one while the session runs.</Empty>
       ) : (
-        <ol className="border-t border-rule-strong max-w-[56rem]">
+        <ol className="border-t border-rule-strong">
           {rows.fields.map((field, index) => (
             <li key={field.id} className="border-b border-rule py-2 flex flex-wrap items-center gap-x-5 gap-y-2">
               <span className="w-6 text-right text-soft">{index + 1}</span>

@@ -31,7 +31,7 @@ export function SessionPage() {
   return (
     <Page
       title={`Participant ${session.participantCode}, ${visit}`}
-      heading={<>Participant <span className="whitespace-nowrap">{session.participantCode}</span>, {visit}</>}
+      heading={<>Participant <span className="whitespace-nowrap">{session.participantCode},</span> {visit}</>}
       lead={`${session.studyTitle} · ${session.rigTitle}, revision ${session.rigRevision} · planned for ${wallTime(session.plannedAt)}`}
       margin={<SessionStateWord state={session.state} />}
       actions={(

@@ -38,7 +38,7 @@ export function MembersPanel({ study, edits }: { study: Study; edits: boolean })
     }] : []),
   ];
   return (
-    <Section title="Members" note={counted(study.members.length, 'person', 'people')} actions={edits ? <Button tone="quiet" onClick={() => setOpen({ what: 'add' })}>Add a member</Button> : null}>
+    <Section narrow title="Members" note={counted(study.members.length, 'person', 'people')} actions={edits ? <Button tone="quiet" onClick={() => setOpen({ what: 'add' })}>Add a member</Button> : null}>
       <RuledTable caption="Members of this study" columns={columns} rows={study.members} rowKey={(row) => row.personId} />
       {open?.what === 'add' ? <MemberDialog study={study} onClose={close} /> : null}
       {open?.what === 'change' ? <MemberDialog study={study} member={open.member} onClose={close} /> : null}

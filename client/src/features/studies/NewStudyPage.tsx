@@ -38,8 +38,8 @@ export function NewStudyPage() {
     <Page title="Start a study" lead={me.role === 'lead' ? 'You become its lead. Members and participants come next.' : 'Experiment leads start studies.'}>
       <Crumbs steps={[{ to: '/studies', name: 'Studies' }]} here="Start a study" />
       <form noValidate onSubmit={submit}>
-        <Section title="What it is">
-          <div className="grid gap-4 max-w-[46rem]">
+        <Section narrow title="What it is">
+          <div className="grid gap-4">
             <div className="grid gap-x-8 gap-y-4 sm:grid-cols-[10rem_1fr]">
               <TextField label="Code" help="Short, like KESTREL." error={errors.code?.message} {...form.register('code')} />
               <TextField label="Title" error={errors.title?.message} {...form.register('title')} />
@@ -47,8 +47,8 @@ export function NewStudyPage() {
             <TextArea label="Protocol" rows={8} help="What is asked of a participant and in which order, for whoever runs a session. It can be written later." error={errors.protocol?.message} {...form.register('protocol')} />
           </div>
         </Section>
-        <Section title="Conditions" note="blind members see the code alone" actions={<Button tone="quiet" onClick={() => conditions.append({ blindCode: letter(conditions.fields.length), label: '' })}>Add a condition</Button>}>
-          <ul className="border-t border-rule-strong max-w-[46rem]">
+        <Section narrow title="Conditions" note="blind members see the code alone" actions={<Button tone="quiet" onClick={() => conditions.append({ blindCode: letter(conditions.fields.length), label: '' })}>Add a condition</Button>}>
+          <ul className="border-t border-rule-strong">
             {conditions.fields.map((field, index) => (
               <li key={field.id} className="border-b border-rule py-2.5 flex flex-wrap items-start gap-x-6 gap-y-2">
                 <TextField className="w-24" label={<>Code<span className="sr-only"> of condition {index + 1}</span></>} error={errors.conditions?.[index]?.blindCode?.message} {...form.register(`conditions.${index}.blindCode`)} />
@@ -58,8 +58,8 @@ export function NewStudyPage() {
             ))}
           </ul>
         </Section>
-        <Section title="Tasks" actions={<Button tone="quiet" onClick={() => tasks.append({ code: `T${tasks.fields.length + 1}`, title: '', timeLimitS: null })}>Add a task</Button>}>
-          <ul className="border-t border-rule-strong max-w-[46rem]">
+        <Section narrow title="Tasks" actions={<Button tone="quiet" onClick={() => tasks.append({ code: `T${tasks.fields.length + 1}`, title: '', timeLimitS: null })}>Add a task</Button>}>
+          <ul className="border-t border-rule-strong">
             {tasks.fields.map((field, index) => (
               <li key={field.id} className="border-b border-rule py-2.5 flex flex-wrap items-start gap-x-6 gap-y-2">
                 <TextField className="w-24" label={<>Code<span className="sr-only"> of task {index + 1}</span></>} error={errors.tasks?.[index]?.code?.message} {...form.register(`tasks.${index}.code`)} />

@@ -21,7 +21,7 @@ export function ParticipantsPanel({ study, adds }: { study: Study; adds: boolean
   const [adding, setAdding] = useState(false);
   const add = adds ? <Button tone={participants.length === 0 ? 'ruled' : 'quiet'} onClick={() => setAdding(true)}>Add a participant</Button> : null;
   return (
-    <Section id="participants" title="Participants" note={participants.length > 0 ? counted(participants.length, 'code') : undefined} actions={participants.length > 0 ? add : null}>
+    <Section narrow id="participants" title="Participants" note={participants.length > 0 ? counted(participants.length, 'code') : undefined} actions={participants.length > 0 ? add : null}>
       {participants.length === 0 ? (
         <Empty title="Nobody takes part yet" action={add}>Participants stand in this book under a code: never a name, a birth date or a contact.</Empty>
       ) : (

@@ -18,7 +18,7 @@ type Text = z.infer<typeof text>;
 export function ProtocolPanel({ study, edits }: { study: Study; edits: boolean }) {
   const [writing, setWriting] = useState(false);
   return (
-    <Section title="Protocol" actions={edits && !writing && study.protocol !== '' ? <Button tone="quiet" onClick={() => setWriting(true)}>Edit</Button> : null}>
+    <Section narrow title="Protocol" actions={edits && !writing && study.protocol !== '' ? <Button tone="quiet" onClick={() => setWriting(true)}>Edit</Button> : null}>
       {writing ? <ProtocolForm study={study} onClose={() => setWriting(false)} /> : study.protocol === '' ? (
         <Empty title="The protocol has not been written" action={edits ? <Button onClick={() => setWriting(true)}>Write it</Button> : null}>What is asked of a participant, in which order, and what ends a trial.</Empty>
       ) : <p className="max-w-[46rem] whitespace-pre-line">{study.protocol}</p>}

@@ -55,7 +55,7 @@ export function StudyPage() {
 function ConditionsAndTasks({ study }: { study: Study }) {
   return (
     <>
-      <Section title="Conditions" note={study.blind ? 'you see codes alone' : undefined}>
+      <Section narrow title="Conditions" note={study.blind ? 'you see codes alone' : undefined}>
         <RuledTable
           caption="Conditions"
           rows={study.conditions}
@@ -66,7 +66,7 @@ function ConditionsAndTasks({ study }: { study: Study }) {
           ]}
         />
       </Section>
-      <Section title="Tasks">
+      <Section narrow title="Tasks">
         <RuledTable
           caption="Tasks"
           rows={study.tasks}

@@ -14,8 +14,8 @@ export function AdministratorToday() {
   const rigs = useQuery(rigsQuery);
   const devices = useQuery(devicesQuery);
   const error = people.error ?? rigs.error ?? devices.error;
-  if (error) return <Section title="The installation"><ProblemNote error={error} onRetry={() => void Promise.all([people.refetch(), rigs.refetch(), devices.refetch()])} /></Section>;
-  if (!people.data || !rigs.data || !devices.data) return <Section title="The installation"><WaitingLines lines={3} /></Section>;
+  if (error) return <Section narrow title="The installation"><ProblemNote error={error} onRetry={() => void Promise.all([people.refetch(), rigs.refetch(), devices.refetch()])} /></Section>;
+  if (!people.data || !rigs.data || !devices.data) return <Section narrow title="The installation"><WaitingLines lines={3} /></Section>;
   const invited = people.data.filter((person) => person.state === 'invited').length;
   const alive = devices.data.filter((device) => device.state === 'connected' || device.state === 'recording').length;
   const working = devices.data.filter((device) => device.state !== 'revoked').length;
@@ -26,8 +26,8 @@ export function AdministratorToday() {
     { to: '/audit', name: 'Audit trail', says: 'Who did what, newest first' },
   ];
   return (
-    <Section title="The installation">
-      <ul className="border-t border-rule-strong max-w-[56rem]">
+    <Section narrow title="The installation">
+      <ul className="border-t border-rule-strong">
         {lines.map((line) => (
           <li key={line.to} className="border-b border-rule py-3 grid sm:grid-cols-[10rem_1fr] gap-x-5">
             <Link to={line.to} className="font-semibold hover:underline underline-offset-4">{line.name}</Link>
