@@ -1,4 +1,3 @@
-/// <reference path="./fft-js.d.ts" />
 import FFT from 'fft.js';
 
 /** Squared sizes of the Fourier coefficients of real samples, made once for a length and used for many segments. */

@@ -33,10 +33,11 @@ export interface SpectrumSum {
  */
 export function welchSpectrum(x: ArrayLike<number>, fs: number, nperseg: number): Spectrum {
   requireSample(x, 1, 'x');
-  const sum = spectrumSum(fs, nperseg);
+  // Before any table of that size is made.
   if (x.length < nperseg) {
     throw new NumericError('TOO_SHORT', `x holds ${x.length} samples and does not fill one segment of ${nperseg}.`);
   }
+  const sum = spectrumSum(fs, nperseg);
   const samples = Float64Array.from(x);
   const step = nperseg - Math.floor(nperseg / 2);
   for (let start = 0; start + nperseg <= samples.length; start += step) sum.add(samples.subarray(start, start + nperseg));
