@@ -1,0 +1,2 @@
+export { deviceRoutes } from './routes';
+export { createDeviceService, hashKey, type DeviceService } from './service';

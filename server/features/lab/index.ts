@@ -1,0 +1,2 @@
+export { labRoutes } from './routes';
+export { createLabService, type LabService } from './service';

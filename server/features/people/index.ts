@@ -1,0 +1,2 @@
+export { peopleRoutes } from './routes';
+export { createPeopleService, type DemoSignIn, type PeopleService } from './service';

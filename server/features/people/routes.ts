@@ -1,0 +1,22 @@
+import { changePerson, getEntrance, getMe, invitePerson, listPeople, setUp } from '@shared/api/people';
+import { type ApiRouter, serve } from '../../http';
+import type { PeopleService } from './service';
+
+export function peopleRoutes(router: ApiRouter, people: PeopleService): void {
+  serve(router, getEntrance, () => people.entrance());
+  serve(router, setUp, async ({ body, note }) => {
+    const made = await people.setUp(body);
+    note({ subject: made.id, detail: { name: made.name, role: made.role } });
+    return { done: true as const };
+  });
+  serve(router, getMe, ({ person }) => people.me(person));
+  serve(router, listPeople, async () => ({ people: await people.list() }));
+  serve(router, invitePerson, async ({ body, person, note }) => {
+    note({ detail: { role: body.role } });
+    return people.invite(body, person);
+  });
+  serve(router, changePerson, ({ params, body, note }) => {
+    note({ detail: { ...body } });
+    return people.change(params.personId, body);
+  });
+}

@@ -1,0 +1,2 @@
+export { rigRoutes } from './routes';
+export { createRigService, type RigService } from './service';
