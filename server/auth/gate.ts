@@ -4,11 +4,13 @@ import type { Database } from '../db/engine';
 import { refuseRequest } from '../http';
 import { guards, may, seesSessions, type Via } from './guards';
 import { type Access, fits, type Membership, type SignedIn } from './person';
-import { membershipIn, studyOf } from './queries';
+import { membershipIn, membershipsOf, studyOf } from './queries';
 
 export interface Gate {
   /** @throws Refusal SIGN_IN, FORBIDDEN or NOT_FOUND */
   pass(id: RouteId, person: SignedIn | null, params: Record<string, string>): Promise<Access>;
+  /** Every place the person has in a study, those that count. */
+  membershipsOf(person: SignedIn): Promise<Membership[]>;
   /** Rooms that do not exist and rooms that are closed to the person read the same: false. */
   mayEnter(person: SignedIn, room: string): Promise<boolean>;
 }
@@ -41,6 +43,10 @@ export function createGate(db: Database, demo: boolean): Gate {
       if (isInsideSession(guard.via) && seesSessions(membership.role) === 'none') throw refuseRequest('NOT_FOUND');
       if (!guard.roles.includes(membership.role)) throw refuseRequest('FORBIDDEN');
       return { person, membership };
+    },
+
+    async membershipsOf(person) {
+      return (await membershipsOf(db, person.id)).filter((each) => fits(person.role, each.role));
     },
 
     async mayEnter(person, room) {

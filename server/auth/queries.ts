@@ -32,6 +32,11 @@ export async function membershipIn(db: Database, studyId: StudyId, personId: Per
   return row ? { studyId, ...row } : null;
 }
 
+export async function membershipsOf(db: Database, personId: PersonId): Promise<Membership[]> {
+  const rows = await db.select({ studyId: members.studyId, role: members.role, blind: members.blind }).from(members).where(eq(members.personId, personId));
+  return rows.map((row) => ({ ...row, studyId: row.studyId as StudyId }));
+}
+
 export async function isClosed(db: Database, personId: string): Promise<boolean> {
   const [row] = await db.select({ closed: people.closed }).from(people).where(eq(people.id, personId));
   return row?.closed ?? true;

@@ -7,7 +7,7 @@ export const refuse = defineRefusals({
   NOT_FOUND: { status: 404, sentence: 'There is no such thing here, or it is not open to you.', wayOut: 'Check the address, or ask the lead of the study to add you.' },
   ROUTE_UNKNOWN: { status: 404, sentence: 'This address is not part of the API.', wayOut: 'See /api/openapi.json for every route.' },
   INVALID: { status: 422, sentence: 'Something in the request is not as expected.', wayOut: 'Correct the points listed and send it again.' },
-  MALFORMED_JSON: { status: 400, sentence: 'The body is not JSON.', wayOut: 'Send one JSON value, in UTF-8.' },
+  MALFORMED_JSON: { status: 400, sentence: 'The body is not JSON.', wayOut: 'Send one JSON value, in UTF-8, without null characters in its texts.' },
   MEDIA_TYPE: { status: 415, sentence: 'The body has to be JSON.', wayOut: 'Send it with Content-Type: application/json.' },
   TOO_LARGE: { status: 413, sentence: 'The body is larger than this route takes.', wayOut: 'Send at most 1 MB.' },
   ORIGIN: { status: 403, sentence: 'The request came from a page of another site.', wayOut: 'Use the pages of this Tautbook. If it stands behind a proxy, set PUBLIC_URL to the address that people type.' },

@@ -50,7 +50,17 @@ export function raiseShield(app: Express, options: ShieldOptions): void {
   }));
 }
 
-export const jsonBody = (): RequestHandler => express.json({ limit: bodyLimitBytes, strict: false });
+/** Neither database nor digests can hold these: null characters, and halves of a surrogate pair. */
+const unstorable = /\0|\p{Surrogate}/u;
+
+export const jsonBody = (): RequestHandler => express.json({
+  limit: bodyLimitBytes,
+  strict: false,
+  reviver: (name: string, value: unknown) => {
+    if (unstorable.test(name) || (typeof value === 'string' && unstorable.test(value))) throw new SyntaxError('unstorable text');
+    return value;
+  },
+});
 
 const hostOf = (url: string | undefined): string | null => {
   try {

@@ -3,7 +3,7 @@ import { z } from 'zod';
 
 const brandedId = <const Brand extends string>(_brand: Brand) => z.uuid().brand<Brand>();
 
-export const personId = z.string().min(1).max(64).brand<'PersonId'>();
+export const personId = z.string().regex(/^[\w-]{1,64}$/).brand<'PersonId'>();
 export const studyId = brandedId('StudyId');
 export const conditionId = brandedId('ConditionId');
 export const taskId = brandedId('TaskId');

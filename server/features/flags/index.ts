@@ -1,0 +1,2 @@
+export { flagRoutes } from './routes';
+export { createFlagService, type FlagService } from './service';

@@ -1,0 +1,14 @@
+import { asc, desc, eq } from 'drizzle-orm';
+import type { Database } from '../../db/engine';
+import { flags, recordings } from '../../db/schema';
+
+/** The newest recording of a trial: whether it is whole, and whether it was looked through. */
+export async function findSearchState(db: Database, trialId: string) {
+  const [row] = await db.select({ id: recordings.id, state: recordings.state, flagsFoundAt: recordings.flagsFoundAt }).from(recordings)
+    .where(eq(recordings.trialId, trialId)).orderBy(desc(recordings.startedAt), desc(recordings.id)).limit(1);
+  return row ?? null;
+}
+
+export const flagsOf = (db: Database, recordingId: string) => db
+  .select({ id: flags.id, kind: flags.kind, cable: flags.cable, startS: flags.startS, endS: flags.endS, peak: flags.peak })
+  .from(flags).where(eq(flags.recordingId, recordingId)).orderBy(asc(flags.startS), asc(flags.kind), asc(flags.cable));

@@ -1,0 +1,2 @@
+export { noteRoutes } from './routes';
+export { createNoteService, type NoteService } from './service';

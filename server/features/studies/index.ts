@@ -1,0 +1,2 @@
+export { studyRoutes } from './routes';
+export { createStudyService, type StudyService } from './service';
