@@ -17,7 +17,23 @@ export default defineConfig({
       '@client': here('./client/src'),
     },
   },
-  build: { outDir: here('./dist/client'), emptyOutDir: true, sourcemap: false, target: 'es2022' },
+  build: {
+    outDir: here('./dist/client'),
+    emptyOutDir: true,
+    sourcemap: false,
+    target: 'es2022',
+    rolldownOptions: {
+      // What changes with its version alone stands apart from what changes with every build, so browsers keep it.
+      output: {
+        codeSplitting: {
+          groups: [
+            { name: 'react', test: /node_modules\/(react|react-dom|react-router|react-router-dom|scheduler)\// },
+            { name: 'schemas', test: /node_modules\/zod\// },
+          ],
+        },
+      },
+    },
+  },
   server: {
     proxy: {
       '/api': `http://127.0.0.1:${apiPort}`,
