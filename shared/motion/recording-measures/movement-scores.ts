@@ -6,6 +6,8 @@ import { sparc } from '../sparc';
 const SETS_OFF_MPS = 0.03;
 const ARRIVES_MPS = 0.02;
 const LEAST_S = 0.2;
+/** A movement reaches out to the valleys of speed beside it, at most this far beyond those two thresholds. */
+const FOOT_S = 0.3;
 /** A movement that never rests for so long is tracking, not reaching; it is not scored, and memory stays bounded. */
 const LONGEST_S = 60;
 
@@ -33,9 +35,14 @@ export interface MovementScorer {
  * @param rateHz of the speeds
  */
 export function movementScorer(rateHz: number): MovementScorer {
-  const speeds = new Float64Array(Math.ceil(LONGEST_S * rateHz));
+  const longest = Math.ceil(LONGEST_S * rateHz);
+  const foot = Math.ceil(FOOT_S * rateHz);
+  const speeds = new Float64Array(longest + 2 * foot);
+  /** Samples gathered so far; while resting, only those since speed last fell. */
   let length = 0;
-  let state: 'unknown' | 'resting' | 'moving' | 'ignored' = 'unknown';
+  let settlingFor = 0;
+  let previous = Infinity;
+  let state: 'unknown' | 'resting' | 'moving' | 'settling' | 'ignored' = 'unknown';
   let movements = 0;
   let leftOut = 0;
   let sparcSum = 0;
@@ -56,31 +63,48 @@ export function movementScorer(rateHz: number): MovementScorer {
     }
   };
 
+  const rest = (fine: number, coarse: number): void => {
+    if (coarse <= previous) length = 0;
+    if (length === foot) speeds.copyWithin(0, 1, length--);
+    speeds[length++] = fine;
+  };
+
   return {
     push(fine, coarse) {
-      if (state === 'moving') {
-        if (coarse < ARRIVES_MPS) {
-          score();
-          state = 'resting';
-        } else if (length === speeds.length) {
+      if (state === 'settling' && (coarse >= previous || settlingFor === foot)) {
+        score();
+        state = 'resting';
+        length = 0;
+      }
+      if (state === 'unknown') {
+        // Already moving when the stretch begins: the start was not seen.
+        if (coarse >= ARRIVES_MPS) leftOut += 1;
+        state = coarse < ARRIVES_MPS ? 'resting' : 'ignored';
+      }
+      if (state === 'ignored' && coarse < ARRIVES_MPS) state = 'resting';
+      if (state === 'resting') {
+        rest(fine, coarse);
+        if (coarse >= SETS_OFF_MPS) state = 'moving';
+      } else if (state === 'moving' || state === 'settling') {
+        speeds[length++] = fine;
+        if (state === 'settling') settlingFor += 1;
+        else if (coarse < ARRIVES_MPS) {
+          state = 'settling';
+          settlingFor = 0;
+        } else if (length > longest) {
           leftOut += 1;
           state = 'ignored';
-        } else speeds[length++] = fine;
-      } else if (coarse < ARRIVES_MPS) state = 'resting';
-      else if (state === 'unknown') {
-        // Already moving when the stretch begins: the start was not seen.
-        leftOut += 1;
-        state = 'ignored';
-      } else if (state === 'resting' && coarse >= SETS_OFF_MPS) {
-        state = 'moving';
-        length = 0;
-        speeds[length++] = fine;
+          length = 0;
+        }
       }
+      previous = coarse;
     },
     endStretch() {
       if (state === 'moving') leftOut += 1;
+      if (state === 'settling') score();
       state = 'unknown';
       length = 0;
+      previous = Infinity;
     },
     get scores() {
       return {
