@@ -10,6 +10,9 @@ import type { TrialState } from '@shared/api/sessions';
 import type { Flag } from '@shared/flags';
 import type { Chunk } from '@shared/recording';
 
+/** A flag of a running recording: `open` while it is still going on. */
+export type LiveFlag = Omit<Flag, 'open'> & { open: boolean };
+
 export interface BusEvents {
   device: { deviceId: DeviceId; state: 'connected' | 'recording' | 'gone' };
   /** A trial moved to another state; the recorder, the run page and the rooms all learn it here. */
@@ -17,7 +20,7 @@ export interface BusEvents {
   session: { sessionId: SessionId };
   samples: { trialId: TrialId; recordingId: RecordingId; channels: readonly string[]; rateHz: number; chunk: Chunk; arrivedUs: number };
   /** Every flag of the running recording so far: those ended and those still open. */
-  liveFlags: { trialId: TrialId; flags: readonly (Flag & { open: boolean })[] };
+  liveFlags: { trialId: TrialId; flags: readonly LiveFlag[] };
   mark: { trialId: TrialId; atS: number; label: string };
   recordingClosed: { recordingId: RecordingId; trialId: TrialId | null };
   flagsFound: { recordingId: RecordingId; trialId: TrialId };

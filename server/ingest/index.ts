@@ -1,0 +1,5 @@
+/** Recording: the device link and what it stores. */
+export { createDeviceLink, type DeviceLink } from './device-link';
+export type { DeviceControl, DeviceState, TrialBook } from './ports';
+export { readChunks, readEncodedChunks, type RecordingToFile, writeRecording } from './store';
+export { unpackChunk } from './zlib-codec';
