@@ -31,6 +31,7 @@ export const guards: Record<RouteId, Guard> = {
   'entrance.get': anyone,
   'setup.make': anyone,
   'me.get': signedIn,
+  'me.change': signedIn,
 
   'people.list': lab('administrator'),
   'people.invite': lab('administrator'),

@@ -1,5 +1,5 @@
 /** Who asks, and what their place in a study is. */
-import type { LabRole, PersonId, StudyId, StudyRole } from '@shared/api/common';
+import { fittingStudyRoles, type LabRole, type PersonId, type StudyId, type StudyRole } from '@shared/api/common';
 
 export interface SignedIn {
   readonly id: PersonId;
@@ -21,15 +21,8 @@ export interface Access {
   readonly membership: Membership | null;
 }
 
-const fitting: Record<LabRole, readonly StudyRole[]> = {
-  administrator: ['reader'],
-  lead: ['lead', 'operator'],
-  operator: ['operator'],
-  clinician: ['clinician'],
-};
-
 /**
  * What one is in the lab bounds what one can be in a study. A membership that no longer fits, because the lab role was
  * changed, counts as none.
  */
-export const fits = (labRole: LabRole, studyRole: StudyRole): boolean => fitting[labRole].includes(studyRole);
+export const fits = (labRole: LabRole, studyRole: StudyRole): boolean => fittingStudyRoles[labRole].includes(studyRole);

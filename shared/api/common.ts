@@ -49,6 +49,14 @@ export type LabRole = z.infer<typeof labRole>;
 export const studyRole = z.enum(['lead', 'operator', 'clinician', 'reader']);
 export type StudyRole = z.infer<typeof studyRole>;
 
+/** What one is in the lab bounds what one can be in a study. */
+export const fittingStudyRoles: Readonly<Record<LabRole, readonly StudyRole[]>> = {
+  administrator: ['reader'],
+  lead: ['lead', 'operator'],
+  operator: ['operator'],
+  clinician: ['clinician'],
+};
+
 /** A person as others see them. */
 export const personRef = z.object({ id: personId, name: z.string() });
 export type PersonRef = z.infer<typeof personRef>;

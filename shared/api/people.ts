@@ -39,6 +39,15 @@ export type Person = z.infer<typeof person>;
 
 export const getMe = route({ id: 'me.get', method: 'GET', path: '/api/me', summary: 'Who is signed in, and their studies', response: me });
 
+export const changeMe = route({
+  id: 'me.change',
+  method: 'PATCH',
+  path: '/api/me',
+  summary: 'Change one’s own name; the audit trail keeps both',
+  body: z.object({ name: line(80) }),
+  response: me,
+});
+
 /** Public: what the sign-in page needs to know. */
 export const getEntrance = route({
   id: 'entrance.get',

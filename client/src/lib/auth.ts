@@ -14,6 +14,7 @@ interface Answer<T> {
 const SAID: Readonly<Record<string, { detail: string; wayOut: string }>> = {
   INVALID_EMAIL_OR_PASSWORD: { detail: 'E-mail and password do not fit together.', wayOut: 'Check both, or have a new password sent.' },
   INVALID_PASSWORD: { detail: 'The present password is not right.', wayOut: 'Type it again, or sign out and have a new one sent.' },
+  PERSON_CLOSED: { detail: 'Your access to this lab is closed.', wayOut: 'Ask an administrator.' },
   INVALID_TOKEN: { detail: 'This link has been used or is too old.', wayOut: 'Ask for a new one.' },
   PASSWORD_TOO_SHORT: { detail: 'The password is too short.', wayOut: 'Take at least 12 characters; a few unrelated words do well.' },
   SESSION_NOT_FRESH: { detail: 'You signed in too long ago for this change.', wayOut: 'Sign out and in again, then repeat it.' },
@@ -40,7 +41,6 @@ export const signOut = () => settle(client.signOut());
 export const requestReset = (email: string) => settle(client.requestPasswordReset({ email, redirectTo: '/reset' }));
 export const resetPassword = (token: string, newPassword: string) => settle(client.resetPassword({ token, newPassword }));
 export const changePassword = (currentPassword: string, newPassword: string) => settle(client.changePassword({ currentPassword, newPassword, revokeOtherSessions: true }));
-export const changeName = (name: string) => settle(client.updateUser({ name }));
 
 export interface SignInEntry {
   token: string;

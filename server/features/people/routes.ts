@@ -1,4 +1,4 @@
-import { changePerson, getEntrance, getMe, invitePerson, listPeople, setUp } from '@shared/api/people';
+import { changeMe, changePerson, getEntrance, getMe, invitePerson, listPeople, setUp } from '@shared/api/people';
 import { type ApiRouter, serve } from '../../http';
 import type { PeopleService } from './service';
 
@@ -10,6 +10,10 @@ export function peopleRoutes(router: ApiRouter, people: PeopleService): void {
     return { done: true as const };
   });
   serve(router, getMe, ({ person }) => people.me(person));
+  serve(router, changeMe, ({ body, person, note }) => {
+    note({ subject: person.id, detail: { from: person.name, to: body.name } });
+    return people.rename(person, body.name);
+  });
   serve(router, listPeople, async () => ({ people: await people.list() }));
   serve(router, invitePerson, async ({ body, person, note }) => {
     note({ detail: { role: body.role } });

@@ -68,6 +68,12 @@ export function createPeopleService({ db, post, desk, publicUrl, demo }: PeopleD
     return row;
   }
 
+  async function me(person: SignedIn): Promise<Me> {
+    const rows = await membershipsOf(db, person.id);
+    const memberships = rows.filter((row) => fits(person.role, row.role)).map((row) => ({ ...row, studyId: studyId.parse(row.studyId) }));
+    return { id: person.id, name: person.name, email: person.email, role: person.role, memberships, demo: demo !== null };
+  }
+
   async function requireAnotherAdministrator(row: PersonRow): Promise<void> {
     if (row.role === 'administrator' && !row.closed && (await openAdministrators(db)) <= 1) throw refuse('LAST_ADMINISTRATOR');
   }
@@ -100,10 +106,12 @@ export function createPeopleService({ db, post, desk, publicUrl, demo }: PeopleD
       }
     },
 
-    async me(person: SignedIn): Promise<Me> {
-      const rows = await membershipsOf(db, person.id);
-      const memberships = rows.filter((row) => fits(person.role, row.role)).map((row) => ({ ...row, studyId: studyId.parse(row.studyId) }));
-      return { id: person.id, name: person.name, email: person.email, role: person.role, memberships, demo: demo !== null };
+    me,
+
+    /** What was written before under the old name stays as it was written. */
+    async rename(person: SignedIn, name: string): Promise<Me> {
+      await updatePerson(db, person.id, { name });
+      return me({ ...person, name });
     },
 
     async list(): Promise<Person[]> {

@@ -1,21 +1,21 @@
 import { zodResolver } from '@hookform/resolvers/zod';
 import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useForm } from 'react-hook-form';
-import { z } from 'zod';
-import { line } from '@shared/api/common';
-import { changeName } from '../../lib/auth';
+import type { z } from 'zod';
+import { changeMe } from '@shared/api/people';
+import { call } from '../../lib/api';
 import { meQuery } from '../../lib/me';
 import { Button } from '../../ui/Button';
 import { TextField } from '../../ui/Field';
 import { ProblemNote } from '../../ui/ProblemNote';
 
-const entry = z.object({ name: line(80) });
+const entry = changeMe.body;
 type Entry = z.infer<typeof entry>;
 
 export function NameForm({ name }: { name: string }) {
   const queries = useQueryClient();
   const form = useForm<Entry>({ resolver: zodResolver(entry), values: { name } });
-  const save = useMutation({ mutationFn: (values: Entry) => changeName(values.name), onSuccess: () => queries.invalidateQueries({ queryKey: meQuery.queryKey }) });
+  const save = useMutation({ mutationFn: (body: Entry) => call(changeMe, { body }), onSuccess: (me) => queries.setQueryData(meQuery.queryKey, me) });
   return (
     <form noValidate className="max-w-[32rem] grid gap-3" onSubmit={form.handleSubmit((values) => save.mutate(values))}>
       <TextField label="Name" autoComplete="name" error={form.formState.errors.name?.message} {...form.register('name')} />

@@ -1,5 +1,6 @@
 import { useSuspenseInfiniteQuery } from '@tanstack/react-query';
 import type { z } from 'zod';
+import { allRoutes } from '@shared/api';
 import type { auditEntry } from '@shared/api/people';
 import { wallTimeToSecond } from '../../lib/format';
 import { Button } from '../../ui/Button';
@@ -12,10 +13,17 @@ import { auditQuery } from './queries';
 
 type AuditEntry = z.infer<typeof auditEntry>;
 
+/** Actions that are no route of ours. */
+const SIGN_IN_WORDS: Readonly<Record<string, string>> = { 'auth.signIn': 'Signed in', 'auth.passwordReset': 'Set a new password by mail' };
+
+/** What a route does, as its contract says it, up to the first semicolon. */
+const actionWords = (action: string): string =>
+  SIGN_IN_WORDS[action] ?? allRoutes.find((route) => route.id === action)?.summary.split(/[;:]/)[0] ?? action;
+
 const columns: RuledColumn<AuditEntry>[] = [
   { key: 'at', head: 'Wall time', plain: true, width: '13rem', cell: (row) => wallTimeToSecond(row.at) },
   { key: 'who', head: 'Who', plain: true, width: '12rem', cell: (row) => <span className="font-semibold">{row.who}</span> },
-  { key: 'what', head: 'What', lead: true, cell: (row) => <><span>{row.action} <span className="text-soft break-all">{row.subject}</span></span><Details detail={row.detail} /></> },
+  { key: 'what', head: 'What', lead: true, cell: (row) => <><span>{actionWords(row.action)} <span className="text-small text-soft">{row.action}</span></span><Details detail={{ about: row.subject, ...row.detail }} /></> },
 ];
 
 export function AuditPage() {

@@ -18,7 +18,14 @@ type Open = { what: 'outcome' | 'remove'; trial: TrialSummary } | { what: 'add' 
 const unrecorded = (trial: TrialSummary) => trial.durationS === null;
 
 /** The trials of a session in their order, each with where it stands and what can be done with it. */
-export function RunSheet({ session, runs }: { session: Session; runs: boolean }) {
+interface RunSheetProps {
+  session: Session;
+  /** May give outcomes and add trials. */
+  runs: boolean;
+  removes: boolean;
+}
+
+export function RunSheet({ session, runs, removes }: RunSheetProps) {
   const [open, setOpen] = useState<Open>(null);
   const close = () => setOpen(null);
   const adds = runs && session.state !== 'closed';
@@ -56,7 +63,7 @@ export function RunSheet({ session, runs }: { session: Session; runs: boolean })
               {trial.state === 'stopped' ? 'Give outcome' : 'Change outcome'}
             </Button>
           ) : null}
-          {trial.state === 'planned' || trial.state === 'stopped' || trial.state === 'judged' ? (
+          {removes && (trial.state === 'planned' || trial.state === 'stopped' || trial.state === 'judged') ? (
             <Button tone="faint" onClick={() => setOpen({ what: 'remove', trial })} about={`trial ${trial.number}`}>Take out</Button>
           ) : null}
         </span>

@@ -37,13 +37,13 @@ export function SessionPage() {
       actions={(
         <>
           {runs && running ? <ButtonLink tone="main" to={`/sessions/${sessionId}/run`}>Run the session</ButtonLink> : null}
-          <ButtonLink to={`/sessions/${sessionId}/log`}>Log</ButtonLink>
+          {runs ? <ButtonLink to={`/sessions/${sessionId}/log`}>Log</ButtonLink> : null}
           {runs && session.state === 'open' ? <CloseSession session={session} /> : null}
         </>
       )}
     >
       <Crumbs steps={[{ to: '/studies', name: 'Studies' }, { to: `/studies/${session.studyId}`, name: session.studyTitle }]} here={`${session.participantCode}, ${visit}`} />
-      <RunSheet session={session} runs={runs && session.state !== 'signed'} />
+      <RunSheet session={session} runs={runs && session.state !== 'signed'} removes={role === 'lead' && session.state !== 'signed'} />
       {link === 'broken' ? <Section><p role="status" className="text-small text-soft">The live line to the server is down and is being tried again; this page may lag behind.</p></Section> : null}
       <Section>
         <Caution>What a flag says about a moment is for people to judge; it stops nothing and protects nobody.</Caution>
@@ -71,7 +71,7 @@ function CloseSession({ session }: { session: Session }) {
       >
         <p>After that no trial can be recorded in it. Notes and outcomes stay open.</p>
         {unrecorded > 0 ? <p className="mt-1">{counted(unrecorded, 'planned trial')} will stay without a recording.</p> : null}
-        {unjudged > 0 ? <p className="mt-1"><Link to="#run-sheet" onClick={() => setOpen(false)} className="link">{counted(unjudged, 'trial')}</Link> still without an outcome.</p> : null}
+        {unjudged > 0 ? <p className="mt-1">{counted(unjudged, 'recorded trial')} without an outcome: give it on <Link to="#run-sheet" onClick={() => setOpen(false)} className="link">the run sheet</Link> first.</p> : null}
       </ConfirmDialog>
     </>
   );

@@ -1,8 +1,9 @@
 import { zodResolver } from '@hookform/resolvers/zod';
 import { useQuery } from '@tanstack/react-query';
+import { useEffect } from 'react';
 import { useForm } from 'react-hook-form';
 import { z } from 'zod';
-import { personId, studyRole, type StudyRole } from '@shared/api/common';
+import { fittingStudyRoles, labRole, personId, studyRole, type StudyRole } from '@shared/api/common';
 import type { Member, Study } from '@shared/api/studies';
 import { STUDY_ROLE_WORDS } from '../../lib/words';
 import { Button } from '../../ui/Button';
@@ -22,6 +23,16 @@ const MAY: Readonly<Record<StudyRole, string>> = {
   reader: 'Replays and writes notes, nothing else.',
 };
 
+/** What a person of the lab can be in a study. */
+function rolesFor(role: string | undefined): readonly StudyRole[] {
+  const known = labRole.safeParse(role);
+  return known.success ? fittingStudyRoles[known.data] : studyRole.options;
+}
+
+/** Roles that fit some lab role that also fits this one. */
+const rolesBeside = (role: StudyRole): readonly StudyRole[] =>
+  studyRole.options.filter((option) => Object.values(fittingStudyRoles).some((fitting) => fitting.includes(role) && fitting.includes(option)));
+
 interface MemberDialogProps {
   study: Study;
   /** Left out: somebody new. */
@@ -38,7 +49,13 @@ export function MemberDialog({ study, member, onClose }: MemberDialogProps) {
   });
   const { errors } = form.formState;
   const role = form.watch('role');
+  const chosen = form.watch('personId');
   const people = candidates.data ?? [];
+  const roles = member ? rolesBeside(member.role) : rolesFor(people.find((person) => person.id === chosen)?.role);
+  // Another person may not fit the role that was chosen for the one before.
+  useEffect(() => {
+    if (roles[0] !== undefined && !roles.includes(role)) form.setValue('role', roles[0]);
+  }, [roles, role, form]);
   const nobody = member === undefined && candidates.isSuccess && people.length === 0;
   return (
     <Dialog open onOpenChange={onClose} title={member ? `Change ${member.name}` : 'Add a member'} description="What one may do in a study comes from the membership alone.">
@@ -53,7 +70,7 @@ export function MemberDialog({ study, member, onClose }: MemberDialogProps) {
             )}
             <ProblemNote error={candidates.error} onRetry={() => void candidates.refetch()} />
             <SelectField label="Role in this study" help={MAY[role]} {...form.register('role')}>
-              {studyRole.options.map((option) => <option key={option} value={option}>{STUDY_ROLE_WORDS[option]}</option>)}
+              {roles.map((option) => <option key={option} value={option}>{STUDY_ROLE_WORDS[option]}</option>)}
             </SelectField>
             <CheckField label="Blind to conditions" help="Sees condition codes, not labels, wherever trials are shown." {...form.register('blind')} />
             <ProblemNote error={set.error} />
