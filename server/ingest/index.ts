@@ -2,4 +2,5 @@
 export { createDeviceLink, type DeviceLink } from './device-link';
 export type { DeviceControl, DeviceState, TrialBook } from './ports';
 export { readChunks, readEncodedChunks, type RecordingToFile, writeRecording } from './store';
+export { readWindow, type ReadWindow } from './read-window';
 export { unpackChunk } from './zlib-codec';

@@ -51,8 +51,8 @@ export const liveSamples = z.object({
   arrivedUs: z.number(),
   count: z.number().int(),
   /** float64 seconds since the recording's start. */
-  timesS: z.instanceof(Uint8Array),
+  timesS: z.custom<Uint8Array>((value) => value instanceof Uint8Array, 'Bytes'),
   /** float32, channel after channel, `count` each; taken samples, thinned to what the room is shown. */
-  values: z.instanceof(Uint8Array),
+  values: z.custom<Uint8Array>((value) => value instanceof Uint8Array, 'Bytes'),
 });
 export type LiveSamples = z.infer<typeof liveSamples>;

@@ -17,7 +17,7 @@ export const windowQuery = z.object({
   buckets: z.coerce.number().int().min(16).max(8192).default(2048),
 });
 
-const block = z.instanceof(Uint8Array);
+const block = z.custom<Uint8Array>((value) => value instanceof Uint8Array, 'Bytes');
 
 export const recordingWindow = z.discriminatedUnion('level', [
   z.object({
