@@ -1,13 +1,13 @@
-import { pointingThroughput } from '@shared/instruments/pointing-throughput';
-import { usabilityScale } from '@shared/instruments/usability-scale';
 import {
+  pointingThroughput,
   rawWorkload,
-  WORKLOAD_SUBSCALES,
+  usabilityScale,
   weightedWorkload,
-  workloadWeights,
+  WORKLOAD_SUBSCALES,
   type WorkloadPair,
   type WorkloadWeights,
-} from '@shared/instruments/workload';
+  workloadWeights,
+} from '@shared/instruments';
 import { NumericError } from '@shared/rig';
 import { z } from 'zod';
 import { defineCall, numbers, rows } from './call';

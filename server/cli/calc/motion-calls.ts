@@ -1,13 +1,18 @@
-import { bandPower } from '@shared/motion/band-power';
-import { butterworthLowPass } from '@shared/motion/butterworth-low-pass';
-import { filterZeroPhase } from '@shared/motion/filter-zero-phase';
-import { logDimensionlessJerk } from '@shared/motion/log-dimensionless-jerk';
-import { passivity } from '@shared/motion/passivity-observer';
-import { pathLength, pathRatio, peakSegmentSpeed, straightLine } from '@shared/motion/path-length';
-import { rainflow } from '@shared/motion/rainflow';
-import { sparc } from '@shared/motion/sparc';
-import { peakSpeed } from '@shared/motion/speed-profile';
-import { welchSpectrum } from '@shared/motion/welch-spectrum';
+import {
+  bandPower,
+  butterworthLowPass,
+  filterZeroPhase,
+  logDimensionlessJerk,
+  passivity,
+  pathLength,
+  pathRatio,
+  peakSegmentSpeed,
+  peakSpeed,
+  rainflow,
+  sparc,
+  straightLine,
+  welchSpectrum,
+} from '@shared/motion';
 import { z } from 'zod';
 import { defineCall, numbers, rows } from './call';
 

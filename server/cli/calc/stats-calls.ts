@@ -1,10 +1,12 @@
-import { blandAltman } from '@shared/stats/bland-altman';
-import { cohenKappa } from '@shared/stats/cohen-kappa';
-import { holm } from '@shared/stats/holm';
-import { intraclassCorrelation } from '@shared/stats/intraclass-correlation';
-import { pairedTTest } from '@shared/stats/paired-t-test';
-import { wilcoxonSignedRank } from '@shared/stats/wilcoxon-signed-rank';
-import { williamsSquare } from '@shared/stats/williams-square';
+import {
+  blandAltman,
+  cohenKappa,
+  holm,
+  intraclassCorrelation,
+  pairedTTest,
+  wilcoxonSignedRank,
+  williamsSquare,
+} from '@shared/stats';
 import { z } from 'zod';
 import { defineCall, numbers, rows } from './call';
 
