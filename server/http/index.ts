@@ -4,3 +4,5 @@ export { refuse as refuseRequest } from './errors';
 export { serve, type ApiRouter, type AuditLine, type AuditNote, type Call, type Handler } from './serve';
 export { describeFault, problemHandler, problemOf, sendProblem, unknownRoute } from './problem';
 export { isSameOrigin, jsonBody, raiseShield, rates, sameOriginChanges, type RateOptions } from './shield';
+export { describeApi } from './openapi';
+export { serveClient } from './client-files';
