@@ -37,9 +37,9 @@ export type MailId = z.infer<typeof mailId>;
 export const wallTime = z.iso.datetime();
 
 /** One line of text a person typed: trimmed, not empty. */
-export const line = (max: number) => z.string().trim().min(1).max(max);
+export const line = (max: number) => z.string().trim().min(1, 'Write something here').max(max, `At most ${max} characters`);
 /** Several lines of text a person typed. */
-export const passage = (max: number) => z.string().trim().min(1).max(max);
+export const passage = (max: number) => z.string().trim().min(1, 'Write something here').max(max, `At most ${max} characters`);
 
 /** Installation role (who one is in the lab); what one may do in a study comes from the membership. */
 export const labRole = z.enum(['administrator', 'lead', 'operator', 'clinician']);

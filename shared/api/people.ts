@@ -3,7 +3,7 @@ import { z } from 'zod';
 import { done, labRole, line, mailId, personId, studyId, studyRole, wallTime } from './common';
 import { route } from './contract';
 
-export const emailAddress = z.email().max(254).transform((text) => text.toLowerCase());
+export const emailAddress = z.email('This is no e-mail address').max(254, 'At most 254 characters').transform((text) => text.toLowerCase());
 /** Length over composition rules (NIST SP 800-63B, from memory). */
 export const password = z.string().min(12, 'At least 12 characters').max(128);
 
@@ -65,7 +65,7 @@ export const setUp = route({
   method: 'POST',
   path: '/api/setup',
   summary: 'Make the first administrator with the one-time code printed on the server console',
-  body: z.object({ code: z.string().trim().min(1).max(64), name: line(80), email: emailAddress, password }),
+  body: z.object({ code: line(64), name: line(80), email: emailAddress, password }),
   response: done,
 });
 

@@ -60,7 +60,7 @@ export const createStudy = route({
     title: line(120),
     protocol: z.string().trim().max(20_000).default(''),
     conditions: z.array(z.object({ blindCode: line(8), label: line(80) })).min(1).max(24),
-    tasks: z.array(z.object({ code: line(24), title: line(120), timeLimitS: z.number().positive().max(3600).nullable().default(null) })).min(1).max(24),
+    tasks: z.array(z.object({ code: line(24), title: line(120), timeLimitS: z.number('A number of seconds, or nothing').positive('More than 0 s').max(3600, 'At most 3600 s').nullable().default(null) })).min(1).max(24),
   }),
   response: study,
 });

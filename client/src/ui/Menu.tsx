@@ -7,7 +7,7 @@ const ITEM = 'block px-3 py-1.5 rounded-edge text-body outline-none data-[highli
 /** A short list that opens under its button. */
 export function Menu({ trigger, label, children }: { trigger: ReactNode; label: string; children: ReactNode }) {
   return (
-    <DropdownMenu.Root>
+    <DropdownMenu.Root modal={false}>
       <DropdownMenu.Trigger asChild>{trigger}</DropdownMenu.Trigger>
       <DropdownMenu.Portal>
         <DropdownMenu.Content aria-label={label} align="end" sideOffset={8} className="z-40 min-w-52 bg-sheet border border-rule-field rounded-edge p-1.5">

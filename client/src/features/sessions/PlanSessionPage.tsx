@@ -63,7 +63,7 @@ export function PlanSessionPage() {
                 <option value="">Choose</option>
                 {participants.map((participant) => <option key={participant.id} value={participant.id}>{participant.code}, visit {participant.sessions + 1}</option>)}
               </SelectField>
-              <SelectField label="Rig" help="Its newest revision; the session keeps it for ever." error={errors.rigRevisionId?.message} {...form.register('rigRevisionId')}>
+              <SelectField label="Rig" help="Its newest revision, kept for ever." error={errors.rigRevisionId?.message} {...form.register('rigRevisionId')}>
                 <option value="">Choose</option>
                 {rigs.map((rig) => <option key={rig.id} value={rig.latest}>{rig.title}, revision {rig.revisions}</option>)}
               </SelectField>
