@@ -10,7 +10,6 @@ import { labRoutes } from './features/lab';
 import { noteRoutes } from './features/notes';
 import { peopleRoutes } from './features/people';
 import { recordingRoutes } from './features/recordings';
-import { recordingRoutes } from './features/recordings';
 import { rigRoutes } from './features/rigs';
 import { sessionRoutes } from './features/sessions';
 import { studyRoutes } from './features/studies';
@@ -52,9 +51,10 @@ export function createApi(options: ApiOptions): Express {
   const guessing = rates(rateLimits.signIn);
   app.use(['/api/auth/sign-in', '/api/auth/reset-password', '/api/auth/change-password', '/api/setup'], guessing);
   app.use('/api/auth/request-password-reset', rates(rateLimits.mail));
+  app.use('/api', sameOriginChanges(options.publicUrl));
   app.all('/api/auth/{*any}', services.desk.handler); // reads the body itself, so it stands before the parser
 
-  app.use('/api', sameOriginChanges(options.publicUrl), jsonBody());
+  app.use('/api', jsonBody());
   app.use(routes(options, gate));
   const description = describeApi(version);
   app.get('/api/openapi.json', (_req, res) => void res.json(description));
@@ -85,6 +85,5 @@ function routes({ db, services, checkResponses }: ApiOptions, gate: Gate): Route
   recordingRoutes(router, services.recordings);
   flagRoutes(router, services.flags);
   noteRoutes(router, services.notes);
-  recordingRoutes(router, services.recordings);
   return router.express;
 }

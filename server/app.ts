@@ -10,7 +10,6 @@ import type { Logger } from 'pino';
 import type { LinkOptions } from '@shared/link';
 import { PublicAddress } from './address';
 import { type Analysis, createAnalysis } from './analysis';
-import { type Analysis, createAnalysis } from './analysis';
 import { createApi, defaultRateLimits, type RateLimits } from './api';
 import { createGate } from './auth';
 import type { Config } from './config';
@@ -44,7 +43,6 @@ export interface Tautbook {
   readonly bus: Bus;
   readonly link: DeviceLink;
   readonly analysis: Analysis;
-  readonly analysis: Analysis;
   /** @throws StartRefusal PORT_BUSY */
   listen(): Promise<{ url: string }>;
   /** One-time code that makes the first administrator; null when there is one. */
@@ -68,7 +66,6 @@ export async function createTautbook(options: TautbookOptions): Promise<Tautbook
   const link = await createDeviceLink({ db, bus, book: createTrialBook(db, bus), log, ...(options.link ? { options: options.link } : {}) });
   const analysis = await createAnalysis({ db, bus, log });
   const services = await createServices({ db, bus, control: link, log, config, publicUrl: () => address.url, demo: options.demo });
-  const analysis = await createAnalysis({ db, bus, log });
   const live = createLive({
     bus,
     onFault,
@@ -90,7 +87,7 @@ export async function createTautbook(options: TautbookOptions): Promise<Tautbook
   server.on('upgrade', (req, socket, head) => doorOf(req, { '/link/v1': link, '/live/v1': live })(req, socket, head));
 
   return {
-    server, services, bus, link, analysis, analysis,
+    server, services, bus, link, analysis,
     setupCode: () => services.people.setupCode(),
     async listen() {
       address.listensOn(await listenOn(server, config));
@@ -101,7 +98,6 @@ export async function createTautbook(options: TautbookOptions): Promise<Tautbook
       await link.close();
       await analysis.close();
       await closeServer(server);
-      await analysis.close();
       services.post.close();
     },
   };

@@ -9,7 +9,6 @@ import { createLabService, type LabService } from './features/lab';
 import { createNoteService, type NoteService } from './features/notes';
 import { createPeopleService, type DemoSignIn, type PeopleService } from './features/people';
 import { createRecordingService, type RecordingService } from './features/recordings';
-import { createRecordingService, type RecordingService } from './features/recordings';
 import { createRigService, type RigService } from './features/rigs';
 import { createSessionReader, createSessionService, type SessionReader, type SessionService } from './features/sessions';
 import { createStudyService, type StudyService } from './features/studies';
@@ -30,7 +29,6 @@ export interface Services {
   recordings: RecordingService;
   notes: NoteService;
   flags: FlagService;
-  recordings: RecordingService;
 }
 
 export interface ServiceOptions {
@@ -71,6 +69,5 @@ export async function createServices({ db, bus, control, log, config, publicUrl,
     recordings: createRecordingService(db),
     notes: createNoteService(db, bus, now),
     flags: createFlagService(db),
-    recordings: createRecordingService(db),
   };
 }
