@@ -30,7 +30,7 @@ export class FlagFinder {
   }
 
   private start(): Worker {
-    const worker = new Worker(new URL('./flag-worker.ts', import.meta.url), { execArgv: ['--import', 'tsx'] });
+    const worker = new Worker(new URL('./flag-worker-start.mjs', import.meta.url));
     worker.unref();
     this.worker = worker;
     return worker;
