@@ -9,6 +9,7 @@ import { rigRoutes } from '../features/rigs';
 import { sessionRoutes } from '../features/sessions';
 import { studyRoutes } from '../features/studies';
 import { todayRoutes } from '../features/today';
+import { trialRoutes } from '../features/trial';
 import { asProblem } from '../lib/api-problem';
 import { entranceQuery, meQuery } from '../lib/me';
 import { signInLapse } from '../lib/sign-in-lapse';
@@ -49,6 +50,7 @@ export function createPages(queries: QueryClient) {
             ...todayRoutes,
             ...studyRoutes,
             ...sessionRoutes,
+            ...trialRoutes,
             ...rigRoutes,
             ...deviceRoutes,
             ...peopleRoutes,

@@ -1,0 +1,6 @@
+import type { RouteObject } from 'react-router-dom';
+import { page } from '../../lib/page';
+
+export { trialQuery, rigRevisionQuery } from './queries';
+
+export const trialRoutes: RouteObject[] = [page('trials/:trialId', async () => (await import('./TrialPage')).TrialPage)];
