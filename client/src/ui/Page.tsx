@@ -62,7 +62,7 @@ interface SectionProps {
 
 export function Section({ title, note, actions, children, id, className, narrow = false }: SectionProps) {
   return (
-    <section id={id} aria-label={title} className={classNames(SPREAD, 'mt-9 scroll-mt-6', className)}>
+    <section id={id} className={classNames(SPREAD, 'mt-9 scroll-mt-6', className)}>
       <MarginNote className="md:pt-1">{note}</MarginNote>
       <div className={classNames('min-w-0', narrow && 'max-w-[54rem]')}>
         {title || actions ? (

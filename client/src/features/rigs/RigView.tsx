@@ -1,14 +1,9 @@
-import { lazy, type ComponentType } from 'react';
+import { lazy } from 'react';
 import type { RigFile } from '@shared/rig/rig-file';
 import { PanelBoundary } from '../../ui/PanelBoundary';
 
-const scenes = import.meta.glob<{ RigScene: ComponentType<{ file: RigFile }> }>('../../replay/scene/RigScene.tsx');
-
-const RigScene = lazy(async () => {
-  const fetchScene = Object.values(scenes)[0];
-  if (fetchScene === undefined) throw new Error('This build has no scene');
-  return { default: (await fetchScene()).RigScene };
-});
+/** The scene brings three dimensions' worth of code: fetched when a rig is looked at. */
+const RigScene = lazy(async () => ({ default: (await import('../../replay/scene/RigScene')).RigScene }));
 
 /** The rig in three dimensions. The table beside it says the same in numbers, for whoever cannot see the scene. */
 export function RigView({ file }: { file: RigFile }) {
