@@ -34,7 +34,7 @@ export async function createAnalysis({ db, bus, log }: { db: Database; bus: Bus;
     if (recording === null) return;
     const rules = recording.studyId === null ? null : await newestRules(db, recording.studyId);
     const flags = await finder.find(
-      { rig: recording.rig, channels: recording.channels, rateHz: recording.rateHz, rules: rules?.rules ?? null },
+      { rig: recording.rig, channels: recording.channels, rateHz: recording.rateHz, rules: rules === null || Object.keys(rules.rules).length === 0 ? null : rules.rules },
       readEncodedChunks(db, id),
     );
     await storeFlags(db, id, rules?.id ?? null, flags, new Date());
