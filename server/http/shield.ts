@@ -47,6 +47,8 @@ export function raiseShield(app: Express, options: ShieldOptions): void {
     },
     strictTransportSecurity: isHttps ? { maxAge: 31_536_000 } : false,
     crossOriginEmbedderPolicy: false,
+    // With no-referrer browsers say `Origin: null` on changes, even to their own server (Fetch standard).
+    referrerPolicy: { policy: 'same-origin' },
   }));
 }
 
