@@ -24,6 +24,11 @@ export function frameFlaw(bytes: Uint8Array): FrameFlaw | null {
     at += size;
     return value;
   };
+  /** The size has to be read before it is added: reading it moves `at` too. */
+  const skip = (size: number): void => {
+    const length = big(size);
+    at += length;
+  };
   const first = bytes[0] ?? 0xc0;
   if (end > 0 && !((first >= 0x80 && first <= 0x8f) || first === 0xde || first === 0xdf)) return 'not a map';
   while (left.length > 0) {
@@ -47,9 +52,9 @@ export function frameFlaw(bytes: Uint8Array): FrameFlaw | null {
     else {
       switch (token) {
         case 0xc0: case 0xc2: case 0xc3: break;
-        case 0xc4: case 0xd9: at += big(1); break;
-        case 0xc5: case 0xda: at += big(2); break;
-        case 0xc6: case 0xdb: at += big(4); break;
+        case 0xc4: case 0xd9: skip(1); break;
+        case 0xc5: case 0xda: skip(2); break;
+        case 0xc6: case 0xdb: skip(4); break;
         case 0xcc: case 0xd0: at += 1; break;
         case 0xcd: case 0xd1: at += 2; break;
         case 0xca: case 0xce: case 0xd2: at += 4; break;
