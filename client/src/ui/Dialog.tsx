@@ -20,7 +20,7 @@ export function Dialog({ open, onOpenChange, title, description, children, wide 
   return (
     <Radix.Root open={open} onOpenChange={onOpenChange}>
       <Radix.Portal>
-        <Radix.Overlay className="fixed inset-0 z-40 bg-shade" />
+        <Radix.Overlay className="fixed inset-0 z-50 bg-shade" />
         <Radix.Content
           onEscapeKeyDown={keep}
           onPointerDownOutside={keep}

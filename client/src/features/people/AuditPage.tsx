@@ -20,10 +20,14 @@ const SIGN_IN_WORDS: Readonly<Record<string, string>> = { 'auth.signIn': 'Signed
 const actionWords = (action: string): string =>
   SIGN_IN_WORDS[action] ?? allRoutes.find((route) => route.id === action)?.summary.split(/[;:]/)[0] ?? action;
 
+/** The subject stands first, unless the details name it anyway or it is the person themselves. */
+const subjectOnce = ({ action, subject, detail }: AuditEntry): Record<string, unknown> =>
+  (action in SIGN_IN_WORDS || Object.values(detail).includes(subject) ? detail : { about: subject, ...detail });
+
 const columns: RuledColumn<AuditEntry>[] = [
   { key: 'at', head: 'Wall time', plain: true, width: '13rem', cell: (row) => wallTimeToSecond(row.at) },
   { key: 'who', head: 'Who', plain: true, width: '12rem', cell: (row) => <span className="font-semibold">{row.who}</span> },
-  { key: 'what', head: 'What', lead: true, cell: (row) => <><span>{actionWords(row.action)} <span className="text-small text-soft">{row.action}</span></span><Details detail={{ about: row.subject, ...row.detail }} /></> },
+  { key: 'what', head: 'What', lead: true, cell: (row) => <><span>{actionWords(row.action)} <span className="text-small text-soft">{row.action}</span></span><Details detail={subjectOnce(row)} /></> },
 ];
 
 export function AuditPage() {
