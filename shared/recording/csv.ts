@@ -3,5 +3,5 @@ export { createCsvReader } from './csv-reader';
 export type { CsvReader, CsvReaderOptions } from './csv-reader';
 export type { CsvFault, CsvFaultCode } from './csv-fault';
 export { describeCsvFault } from './csv-fault';
-export { createCsvPrinter } from './csv-printer';
+export { createCsvPrinter, shortestFloat32 } from './csv-printer';
 export type { CsvDecimals, CsvPrinter } from './csv-printer';
