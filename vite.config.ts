@@ -22,6 +22,8 @@ export default defineConfig({
     emptyOutDir: true,
     sourcemap: false,
     target: 'es2022',
+    // kB. The scene's library is one piece of 700 kB, fetched only where a scene is shown.
+    chunkSizeWarningLimit: 1000,
     rolldownOptions: {
       // What changes with its version alone stands apart from what changes with every build, so browsers keep it.
       output: {
