@@ -3,9 +3,9 @@
  *
  * Every column of float32 becomes integers in the way that is cheaper for it: exact counts on the sensor's decimal
  * grid where the values lie on one (13.5387 N is 135387 at four decimals), else the bit patterns in numeric order.
- * Those integers are differenced (order 0, 1 or 2), zigzagged, split into byte planes, and each plane is left out
- * (all zero), stored (noise), entropy-coded (Huffman-only DEFLATE) or searched for repeats (DEFLATE). The choices
- * stand in the chunk. Layout, little-endian:
+ * Those integers are differenced (order 0, 1 or 2) and zigzagged. Noise becomes Rice codes; where most differences are zero,
+ * they are split into byte planes, and each plane is left out (all zero), stored, entropy-coded (Huffman-only DEFLATE)
+ * or searched for repeats (DEFLATE). The choices stand in the chunk. Layout, little-endian:
  *
  *   0  'TBch'            4  version u8, 0 u8, columns u16
  *   8  count u32        12  first f64

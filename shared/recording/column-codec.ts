@@ -3,6 +3,7 @@
  * Works on the bits throughout: reading a NaN as a number could change its payload.
  */
 import type { ByteReader, ByteWriter } from './bytes';
+import { powersOfTen } from './csv-number';
 import { findGrid } from './decimal-grid';
 import { countIntegers, describeIntegers, readIntegers, writeIntegerPlane, type IntegerReader, type PackedIntegers } from './integer-codec';
 import { planeWay, type StreamReaders, type StreamWriters } from './streams';
@@ -28,10 +29,6 @@ export function countColumn(column: Float32Array, count: number): PackedColumn {
   if (!grid) return { kind: 'bits', integers: countIntegers(orderedBits(bits, count), count) };
   const integers = countIntegers(grid.integers, count);
   const strays = grid.strays > 0 ? collectStrays(bits, grid.isStray, count, grid.strays) : null;
-  if (grid.finerThanFloat) {
-    const asBits = countIntegers(orderedBits(bits, count), count);
-    if (meanSize(asBits, count) < meanSize(integers, count)) return { kind: 'bits', integers: asBits };
-  }
   return { kind: 'grid', decimals: grid.decimals, integers, strays };
 }
 
@@ -46,7 +43,7 @@ export function describeColumn(column: PackedColumn, head: ByteWriter, streams: 
     head.u8(column.decimals);
     describeStrays(column.strays, head, streams);
   }
-  describeIntegers(column.integers, head);
+  describeIntegers(column.integers, head, streams);
 }
 
 export function writePlanes(column: PackedColumn, plane: number, streams: StreamWriters): void {
@@ -62,17 +59,18 @@ export function readColumn(head: ByteReader, streams: StreamReaders, count: numb
     return { readPlane: () => undefined, toColumn: (n) => new Float32Array(new Uint32Array(n).fill(bits).buffer) };
   }
   if (kind === columnKind.bits) {
-    const integers = readIntegers(head, count);
+    const integers = readIntegers(head, streams, count);
     return { readPlane: integers.readPlane, toColumn: (n) => fromOrderedBits(integers.decode(), n) };
   }
   if (kind !== columnKind.grid) throw new RangeError(`a column of kind ${kind}`);
-  const decimals = head.u8();
+  const scale = powersOfTen[head.u8()];
+  if (scale === undefined) throw new RangeError('a grid finer than any');
   const strays = readStrays(head, streams, count);
-  const integers: IntegerReader = readIntegers(head, count);
+  const integers: IntegerReader = readIntegers(head, streams, count);
   return {
     readPlane: integers.readPlane,
     toColumn: (n) => {
-      const column = fromGrid(integers.decode(), n, decimals);
+      const column = integers.decodeOver(scale);
       if (strays) putStrays(column, strays, n);
       return column;
     },
@@ -94,25 +92,13 @@ function orderedBits(bits: Uint32Array, count: number): Int32Array {
 }
 
 function fromOrderedBits(ordered: Int32Array, count: number): Float32Array {
+  const column = new Float32Array(count);
+  const bits = new Int32Array(column.buffer);
   for (let i = 0; i < count; i += 1) {
     const b = ordered[i] as number;
-    ordered[i] = b ^ ((b >> 31) & 0x7fffffff);
+    bits[i] = b ^ ((b >> 31) & 0x7fffffff);
   }
-  return new Float32Array(ordered.buffer, ordered.byteOffset, count);
-}
-
-/** The same division that the grid was found with, so that the same float32 comes back. */
-function fromGrid(integers: Int32Array, count: number, decimals: number): Float32Array {
-  const out = new Float32Array(count);
-  const scale = 10 ** decimals;
-  for (let i = 0; i < count; i += 1) out[i] = (integers[i] as number) / scale;
-  return out;
-}
-
-function meanSize(column: PackedIntegers, count: number): number {
-  let sum = 0;
-  for (let i = 0; i < count; i += 1) sum += (column.zigzag[i] as number) >>> 0;
-  return sum / count;
+  return column;
 }
 
 function collectStrays(bits: Uint32Array, isStray: Uint8Array, count: number, strays: number): Strays {

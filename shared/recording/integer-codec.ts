@@ -1,5 +1,9 @@
-/** A column of int32 as differences of the cheapest order, zigzagged, in byte planes. All arithmetic wraps at 2^32, so every input is reversible. */
+/**
+ * A column of int32 as differences of the cheapest order, zigzagged. Where they are noise they become Rice codes; where most of
+ * them are zero (switches, held values), byte planes for DEFLATE. All arithmetic wraps at 2^32, so every input is reversible.
+ */
 import type { ByteReader, ByteWriter } from './bytes';
+import { riceDecode, riceEncode } from './rice-code';
 import { planeWay, type PlaneWay, type StreamReaders, type StreamWriters } from './streams';
 
 export type DifferenceOrder = 0 | 1 | 2;
@@ -9,18 +13,29 @@ export type PackedIntegers = {
   /** First value, and for order 2 the first difference. */
   readonly base: number;
   readonly slope: number;
-  readonly ways: readonly [PlaneWay, PlaneWay, PlaneWay, PlaneWay];
-  /** Zigzagged differences, `count` of them. */
-  readonly zigzag: Int32Array;
+  readonly coded: { readonly way: 'rice'; readonly bytes: Uint8Array } | { readonly way: 'planes'; readonly ways: readonly PlaneWay[]; readonly zigzag: Int32Array };
 };
 
-export type IntegerReader = { readPlane(plane: number, streams: StreamReaders): void; decode(): Int32Array };
+/** Set in the order's byte when the differences are Rice codes. */
+const riceBit = 8;
+
+export type IntegerReader = {
+  readPlane(plane: number, streams: StreamReaders): void;
+  /** Memory that holds until the next column is decoded. */
+  decode(): Int32Array;
+  /** Each integer over `scale`, as float32, in memory of its own. */
+  decodeOver(scale: number): Float32Array;
+};
 
 export function countIntegers(values: Int32Array, count: number): PackedIntegers {
   const order = cheapestOrder(values, count);
   const base = values[0] as number;
   const slope = order === 2 && count > 1 ? ((values[1] as number) - base) | 0 : 0;
-  const zigzag = new Int32Array(count);
+  if (zigzagScratch.length < count) zigzagScratch = new Int32Array(count);
+  const zigzag = zigzagScratch;
+  zigzag[0] = 0;
+  if (count > 1) zigzag[1] = 0;
+  let zeros = 0;
   let all = 0;
   if (order === 0) {
     for (let i = 1; i < count; i += 1) {
@@ -28,6 +43,7 @@ export function countIntegers(values: Int32Array, count: number): PackedIntegers
       const z = (d << 1) ^ (d >> 31);
       zigzag[i] = z;
       all |= z;
+      if (z === 0) zeros += 1;
     }
   } else if (order === 1) {
     let before = base;
@@ -38,6 +54,7 @@ export function countIntegers(values: Int32Array, count: number): PackedIntegers
       const z = (d << 1) ^ (d >> 31);
       zigzag[i] = z;
       all |= z;
+      if (z === 0) zeros += 1;
     }
   } else {
     let before = count > 1 ? (values[1] as number) : base;
@@ -51,23 +68,32 @@ export function countIntegers(values: Int32Array, count: number): PackedIntegers
       const z = (d << 1) ^ (d >> 31);
       zigzag[i] = z;
       all |= z;
+      if (z === 0) zeros += 1;
     }
   }
+  if (zeros <= count / 2) return { order, base, slope, coded: { way: 'rice', bytes: riceEncode(zigzag, count).slice() } };
   const ways = [0, 1, 2, 3].map((plane) => chooseWay(zigzag, count, plane, all));
-  return { order, base, slope, ways: ways as unknown as PackedIntegers['ways'], zigzag };
+  return { order, base, slope, coded: { way: 'planes', ways, zigzag: zigzag.slice(0, count) } };
 }
 
-export function describeIntegers(column: PackedIntegers, head: ByteWriter): void {
-  head.u8(column.order);
-  head.u8(column.ways.reduce<number>((bits, way, plane) => bits | (way << (2 * plane)), 0));
-  head.i32(column.base);
-  if (column.order === 2) head.i32(column.slope);
+let zigzagScratch = new Int32Array(0);
+
+export function describeIntegers({ order, base, slope, coded }: PackedIntegers, head: ByteWriter, streams: StreamWriters): void {
+  head.u8(coded.way === 'rice' ? order | riceBit : order);
+  head.i32(base);
+  if (order === 2) head.i32(slope);
+  if (coded.way === 'rice') {
+    head.u32(coded.bytes.length);
+    streams.of(planeWay.stored).bytes(coded.bytes);
+  } else head.u8(coded.ways.reduce<number>((bits, way, plane) => bits | (way << (2 * plane)), 0));
 }
 
-export function writeIntegerPlane({ ways, zigzag }: PackedIntegers, plane: number, streams: StreamWriters): void {
-  const way = ways[plane] as PlaneWay;
+export function writeIntegerPlane({ coded }: PackedIntegers, plane: number, streams: StreamWriters): void {
+  if (coded.way === 'rice') return;
+  const way = coded.ways[plane] as PlaneWay;
   if (way === planeWay.none) return;
   const writer = streams.of(way);
+  const { zigzag } = coded;
   const count = zigzag.length;
   const at = writer.reserve(count);
   const target = writer.target();
@@ -75,60 +101,109 @@ export function writeIntegerPlane({ ways, zigzag }: PackedIntegers, plane: numbe
   for (let i = 0; i < count; i += 1) target[at + i] = (zigzag[i] as number) >>> shift;
 }
 
-export function readIntegers(head: ByteReader, count: number): IntegerReader {
-  const order = head.u8();
-  const bits = head.u8();
-  const base = head.i32();
+export function readIntegers(head: ByteReader, streams: StreamReaders, count: number): IntegerReader {
+  const kind = head.u8();
+  const order = kind & ~riceBit;
   if (order > 2) throw new RangeError(`differences of order ${order}`);
+  const base = head.i32();
   const slope = order === 2 ? head.i32() : 0;
+  if (kind & riceBit) {
+    const bytes = streams.take(planeWay.stored, head.u32());
+    const differences = (): Int32Array => {
+      if (zigzagScratch.length < count) zigzagScratch = new Int32Array(count);
+      riceDecode(bytes, count, zigzagScratch);
+      return zigzagScratch;
+    };
+    return {
+      readPlane: () => undefined,
+      decode: () => undoDifferences(differences(), count, order, base, slope),
+      decodeOver: (scale) => (order === 1 ? sumsOver(scale, differences(), count, base) : over(scale, undoDifferences(differences(), count, order, base, slope), count)),
+    };
+  }
+  const bits = head.u8();
   const zigzag = new Int32Array(count);
   return {
-    readPlane(plane, streams) {
+    readPlane(plane, from) {
       const way = ((bits >>> (2 * plane)) & 3) as PlaneWay;
       if (way === planeWay.none) return;
-      const bytes = streams.take(way, count);
+      const bytes = from.take(way, count);
       const shift = 8 * plane;
-      if (plane === 0) for (let i = 0; i < count; i += 1) zigzag[i] = bytes[i] as number;
-      else for (let i = 0; i < count; i += 1) zigzag[i] = (zigzag[i] as number) | ((bytes[i] as number) << shift);
+      for (let i = 0; i < count; i += 1) zigzag[i] = (zigzag[i] as number) | ((bytes[i] as number) << shift);
     },
     decode: () => undoDifferences(zigzag, count, order, base, slope),
+    decodeOver: (scale) => over(scale, undoDifferences(zigzag, count, order, base, slope), count),
   };
+}
+
+/** The same division that the grid was found with, so that the same float32 comes back. */
+function over(scale: number, integers: Int32Array, count: number): Float32Array {
+  const out = new Float32Array(count);
+  for (let i = 0; i < count; i += 1) out[i] = (integers[i] as number) / scale;
+  return out;
+}
+
+/** The commonest case in one pass: first differences summed and divided. */
+function sumsOver(scale: number, zigzag: Int32Array, count: number, base: number): Float32Array {
+  const out = new Float32Array(count);
+  let value = base;
+  for (let i = 0; i < count; i += 1) {
+    const z = zigzag[i] as number;
+    value = (value + ((z >>> 1) ^ -(z & 1))) | 0;
+    out[i] = value / scale;
+  }
+  return out;
 }
 
 /** Overwrites its input: the reader that owns it is used once. */
 function undoDifferences(zigzag: Int32Array, count: number, order: number, base: number, slope: number): Int32Array {
-  let value = base;
-  let step = slope;
-  for (let i = 0; i < count; i += 1) {
-    const z = zigzag[i] as number;
-    const d = (z >>> 1) ^ -(z & 1);
-    if (order === 0) value = (base + d) | 0;
-    else if (order === 1) value = (value + d) | 0;
-    else if (i > 0) {
-      if (i > 1) step = (step + d) | 0;
-      value = (value + step) | 0;
+  if (order === 0) {
+    for (let i = 0; i < count; i += 1) {
+      const z = zigzag[i] as number;
+      zigzag[i] = base + ((z >>> 1) ^ -(z & 1));
     }
-    zigzag[i] = value;
+  } else if (order === 1) {
+    let value = base;
+    for (let i = 0; i < count; i += 1) {
+      const z = zigzag[i] as number;
+      value = (value + ((z >>> 1) ^ -(z & 1))) | 0;
+      zigzag[i] = value;
+    }
+  } else {
+    let value = base;
+    let step = slope;
+    zigzag[0] = value;
+    for (let i = 1; i < count; i += 1) {
+      const z = zigzag[i] as number;
+      step = (step + ((z >>> 1) ^ -(z & 1))) | 0;
+      value = (value + step) | 0;
+      zigzag[i] = value;
+    }
   }
   return zigzag;
 }
 
+/** So many values in a row, at every fourth such stretch, tell which order is cheapest. */
+const probeStretch = 64;
+
 /** The order whose differences are smallest in the mean, which is also the one with the fewest bits for noise of any bell shape. */
 function cheapestOrder(values: Int32Array, count: number): DifferenceOrder {
   const base = values[0] as number;
-  let v1 = base;
-  let step = 0;
   let sum0 = 0;
   let sum1 = 0;
   let sum2 = 0;
-  for (let i = 1; i < count; i += 1) {
-    const v = values[i] as number;
-    const s = (v - v1) | 0;
-    sum0 += Math.abs((v - base) | 0);
-    sum1 += Math.abs(s);
-    sum2 += Math.abs((s - step) | 0);
-    v1 = v;
-    step = s;
+  for (let from = 1; from < count; from += 4 * probeStretch) {
+    const to = Math.min(count, from + probeStretch);
+    let before = values[from - 1] as number;
+    let step = from > 1 ? (before - (values[from - 2] as number)) | 0 : 0;
+    for (let i = from; i < to; i += 1) {
+      const value = values[i] as number;
+      const next = (value - before) | 0;
+      sum0 += Math.abs((value - base) | 0);
+      sum1 += Math.abs(next);
+      sum2 += Math.abs((next - step) | 0);
+      before = value;
+      step = next;
+    }
   }
   if (sum2 < sum1 && sum2 < sum0) return 2;
   return sum1 <= sum0 ? 1 : 0;

@@ -81,16 +81,15 @@ class Level {
       let low = this.minimum[c] as number;
       let high = this.maximum[c] as number;
       let sum = 0;
-      let measured = 0;
+      let measured = to - from;
       for (let i = from; i < to; i += 1) {
         const value = column[i] as number;
         if (value < low) low = value;
         if (value > high) high = value;
-        if (value === value) {
-          sum += value;
-          measured += 1;
-        }
+        sum += value;
       }
+      // Rare: something in the stretch was not measured. Comparisons with NaN are false, so only sum and count are wrong.
+      if (sum !== sum) [sum, measured] = sumOfMeasured(column, from, to);
       this.minimum[c] = low;
       this.maximum[c] = high;
       this.sum[c] = (this.sum[c] as number) + sum;
@@ -159,6 +158,18 @@ class Level {
       measured: shorten(block.measured),
     };
   }
+}
+
+function sumOfMeasured(column: Float32Array, from: number, to: number): [number, number] {
+  let sum = 0;
+  let measured = 0;
+  for (let i = from; i < to; i += 1) {
+    const value = column[i] as number;
+    if (value !== value) continue;
+    sum += value;
+    measured += 1;
+  }
+  return [sum, measured];
 }
 
 function emptyBlock(level: number, first: number, channels: number): PyramidBlock {

@@ -20,7 +20,7 @@ export function packTimes(timesUs: Float64Array, count: number): PackedTimes {
   const steps = wholeSteps(timesUs, count);
   if (steps) {
     const column = countIntegers(steps, count);
-    return { column, describe: (head) => { head.u8(timeKind.steps); head.f64(start); describeIntegers(column, head); } };
+    return { column, describe: (head, streams) => { head.u8(timeKind.steps); head.f64(start); describeIntegers(column, head, streams); } };
   }
   return {
     column: null,
@@ -42,11 +42,11 @@ export function readTimes(head: ByteReader, streams: StreamReaders, count: numbe
   if (kind === timeKind.even) {
     const start = head.f64();
     const step = head.f64();
-    return { column: null, decode: () => Float64Array.from({ length: count }, (_, i) => start + i * step) };
+    return { column: null, decode: () => evenTimes(start, step, count) };
   }
   if (kind === timeKind.steps) {
     const start = head.f64();
-    const column = readIntegers(head, count);
+    const column = readIntegers(head, streams, count);
     return { column, decode: () => addSteps(start, column.decode(), count) };
   }
   if (kind !== timeKind.bits) throw new RangeError(`times of kind ${kind}`);
@@ -62,8 +62,15 @@ export function readTimes(head: ByteReader, streams: StreamReaders, count: numbe
   };
 }
 
+function evenTimes(start: number, step: number, count: number): Float64Array {
+  const times = new Float64Array(count);
+  for (let i = 0; i < count; i += 1) times[i] = start + i * step;
+  return times;
+}
+
 function isEven(timesUs: Float64Array, count: number, start: number, step: number): boolean {
-  for (let i = 0; i < count; i += 1) if (!Object.is(timesUs[i], start + i * step)) return false;
+  if (Object.is(start, -0)) return false;
+  for (let i = 0; i < count; i += 1) if (timesUs[i] !== start + i * step) return false;
   return true;
 }
 
