@@ -35,8 +35,6 @@ export function takeBatch(batch: Batch, run: RunPlace, options: LinkOptions): Re
   return { n: batch.n, first: batch.first, count, timesUs, values };
 }
 
-export const isFlaw = (taken: ReceivedBatch | BatchFlaw): taken is BatchFlaw => 'code' in taken;
-
 const flaw = (code: FaultCode, message: string): BatchFlaw => ({ code, message });
 
 function timesOf({ t0Us, dtUs, count }: Batch, { startUs, rateHz, lastUs }: RunPlace): Float64Array | null {

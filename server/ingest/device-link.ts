@@ -6,6 +6,8 @@ import { WebSocketServer } from 'ws';
 import type { DeviceId } from '@shared/api/common';
 import { type FaultCode, faultKinds, LINK_PROTOCOL, type LinkOptions, linkOptions } from '@shared/link';
 import { Connection } from './connection';
+import { DeviceRecord } from './device-record';
+import { faultText } from './fault-text';
 import type { DeviceControl } from './ports';
 import { type DeviceRow, findDeviceByKey } from './queries';
 import { Recorder, type RecorderParts } from './recorder';
@@ -25,19 +27,29 @@ export async function createDeviceLink(parts: Omit<RecorderParts, 'options'> & {
   const connections = new Map<DeviceId, Connection>();
   const sockets = new WebSocketServer({ noServer: true, maxPayload: options.ceilingBytes, perMessageDeflate: false, handleProtocols: () => LINK_PROTOCOL });
 
+  function counted(device: DeviceRow, code: FaultCode): FaultCode {
+    const record = new DeviceRecord(device, parts.db, parts.log);
+    record.fault(code);
+    void record.write();
+    return code;
+  }
+
   async function admit(req: IncomingMessage): Promise<DeviceRow | FaultCode> {
     const protocols = (req.headers['sec-websocket-protocol'] ?? '').split(',').map((name) => name.trim());
-    const bearer = /^Bearer ([\w-]{1,200})$/.exec(req.headers.authorization ?? '')?.[1];
+    const bearer = /^Bearer ([\w.~+/=-]{1,200})$/i.exec(req.headers.authorization ?? '')?.[1];
     if (bearer === undefined) return 'KEY_UNKNOWN';
     const device = await findDeviceByKey(parts.db, createHash('sha256').update(bearer).digest('hex'));
     if (device === null) return 'KEY_UNKNOWN';
-    if (device.revokedAt !== null) return 'KEY_REVOKED';
+    if (device.revokedAt !== null) return counted(device, 'KEY_REVOKED');
     if (!protocols.includes(LINK_PROTOCOL)) return 'LINK_VERSION';
     const older = connections.get(device.id as DeviceId);
     if (older === undefined) return device;
     // The older connection may be a dead one that nobody told us about: it has a moment to prove itself.
-    if (await older.answers(options.busyPingMs)) return 'DEVICE_BUSY';
-    older.terminate();
+    if (await older.answers(options.busyPingMs)) {
+      older.count('DEVICE_BUSY');
+      return 'DEVICE_BUSY';
+    }
+    await older.terminate();
     return device;
   }
 
@@ -57,22 +69,23 @@ export async function createDeviceLink(parts: Omit<RecorderParts, 'options'> & {
       admit(req).then(
         (answer) => (typeof answer === 'string' ? refuse(socket, answer) : open(answer, req, socket, head)),
         (error: unknown) => {
-          parts.log.error({ message: error instanceof Error ? error.message.slice(0, 200) : '' }, 'a device could not be let in');
+          parts.log.error({ message: faultText(error) }, 'a device could not be let in');
           refuse(socket, 'STORAGE');
         },
       );
     },
 
     stateOf(deviceId) {
-      if (connections.get(deviceId)?.state !== 'streaming') return 'gone';
-      return recorder.ofDevice(deviceId).some((run) => run.ending === null) ? 'recording' : 'connected';
+      const connection = connections.get(deviceId);
+      if (connection?.state !== 'streaming') return 'gone';
+      return connection.streams.length > 0 ? 'recording' : 'connected';
     },
-    rigOf: (deviceId) => connections.get(deviceId)?.rig ?? null,
+    rigOf: (deviceId) => connections.get(deviceId)?.announced?.rig ?? null,
 
     arm(deviceId, trial) {
       const connection = connections.get(deviceId);
       if (connection?.state !== 'streaming') return 'gone';
-      if (recorder.ofDevice(deviceId).some((run) => run.ending === null)) return 'busy';
+      if (connection.streams.length > 0) return 'busy';
       connection.send({ type: 'arm', trial });
       return 'sent';
     },
@@ -82,13 +95,15 @@ export async function createDeviceLink(parts: Omit<RecorderParts, 'options'> & {
       if (run === undefined) return 'not-recording';
       const connection = connections.get(run.deviceId);
       if (connection?.state !== 'streaming') return 'gone';
-      connection.send({ type: 'stop', run: run.run });
+      // A device that came back without going on with the run has forgotten it: nobody else will end it.
+      if (run.by !== connection) recorder.end(run, 'lost');
+      else connection.send({ type: 'stop', run: run.run });
       return 'sent';
     },
     revoke: (deviceId) => connections.get(deviceId)?.fault('KEY_REVOKED'),
 
     async close() {
-      for (const connection of connections.values()) connection.terminate();
+      await Promise.all([...connections.values()].map((connection) => connection.terminate(true)));
       sockets.close();
       await recorder.stop();
     },

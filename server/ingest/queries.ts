@@ -1,7 +1,8 @@
-import { and, asc, desc, eq, gt, gte, lt, lte, sql } from 'drizzle-orm';
+import { setImmediate as breathe } from 'node:timers/promises';
+import { and, asc, desc, eq, gt, gte, inArray, lte, sql } from 'drizzle-orm';
 import type { RigFile } from '@shared/rig';
 import type { Database } from '../db/engine';
-import { devices, recordingChunks, recordingPyramid, recordings, recordingTail, rigRevisions, rigs } from '../db/schema';
+import { devices, recordingChunks, recordingPyramid, recordings, recordingTail, rigRevisions, rigs, trials } from '../db/schema';
 
 export type RecordingRow = typeof recordings.$inferSelect;
 export type NewRecording = typeof recordings.$inferInsert;
@@ -49,7 +50,8 @@ export async function findRecording(db: Database, id: string): Promise<Recording
   return row ?? null;
 }
 
-export const growingRuns = (db: Database): Promise<RecordingRow[]> => db.select().from(recordings).where(eq(recordings.state, 'growing')).orderBy(asc(recordings.id));
+export const growingRuns = (db: Database, deviceId?: string): Promise<RecordingRow[]> =>
+  db.select().from(recordings).where(and(eq(recordings.state, 'growing'), deviceId === undefined ? undefined : eq(recordings.deviceId, deviceId))).orderBy(asc(recordings.id));
 
 export const tailOf = (db: Database, recordingId: string) =>
   db.select({ batch: recordingTail.batch, data: recordingTail.data }).from(recordingTail).where(eq(recordingTail.recordingId, recordingId)).orderBy(asc(recordingTail.batch));
@@ -74,14 +76,32 @@ export interface CommitLoad {
   replaced: readonly { recordingId: string; below: number }[];
 }
 
-/** Everything of one group commit, or nothing of it. */
+/** Bytes of one statement: what the embedded database takes in a few milliseconds, so that the event loop is not held longer. */
+const STATEMENT_BYTES = 262_144;
+
+/**
+ * Everything of one group commit, or nothing of it. The same load twice is stored once, so that a commit whose answer got
+ * lost can be tried again.
+ */
 export async function commitRuns(db: Database, load: CommitLoad): Promise<void> {
   await db.transaction(async (tx) => {
-    if (load.tail.length > 0) await tx.insert(recordingTail).values([...load.tail]);
-    if (load.chunks.length > 0) await tx.insert(recordingChunks).values([...load.chunks]);
-    if (load.pyramid.length > 0) await tx.insert(recordingPyramid).values([...load.pyramid]).onConflictDoNothing();
-    for (const { recordingId, below } of load.replaced) {
-      await tx.delete(recordingTail).where(and(eq(recordingTail.recordingId, recordingId), lt(recordingTail.batch, below)));
+    for (const rows of slices(load.tail)) {
+      await tx.insert(recordingTail).values(rows).onConflictDoNothing();
+      await breathe();
+    }
+    for (const rows of slices(load.chunks)) {
+      await tx.insert(recordingChunks).values(rows).onConflictDoNothing();
+      await breathe();
+    }
+    for (const rows of slices(load.pyramid)) {
+      await tx.insert(recordingPyramid).values(rows).onConflictDoNothing();
+      await breathe();
+    }
+    if (load.replaced.length > 0) {
+      const rows = JSON.stringify(load.replaced);
+      await tx.execute(sql`
+        delete from ${recordingTail} as t using jsonb_to_recordset(${rows}::jsonb) as v("recordingId" uuid, below int)
+        where t.recording_id = v."recordingId" and t.batch < v.below`);
     }
     if (load.progress.length > 0) {
       const rows = JSON.stringify(load.progress);
@@ -94,10 +114,41 @@ export async function commitRuns(db: Database, load: CommitLoad): Promise<void> 
   });
 }
 
-export async function closeRecording(db: Database, id: string, values: Partial<NewRecording>, pyramid: readonly PyramidRow[]): Promise<void> {
-  await db.transaction(async (tx) => {
-    if (pyramid.length > 0) await tx.insert(recordingPyramid).values([...pyramid]).onConflictDoNothing();
-    await tx.update(recordings).set({ ...values, state: 'closed' }).where(and(eq(recordings.id, id), eq(recordings.state, 'growing')));
+function slices<Row extends { data: Uint8Array }>(rows: readonly Row[]): Row[][] {
+  const out: Row[][] = [];
+  let bytes = Number.POSITIVE_INFINITY;
+  for (const row of rows) {
+    if (bytes + row.data.length > STATEMENT_BYTES) {
+      out.push([]);
+      bytes = 0;
+    }
+    out.at(-1)?.push(row);
+    bytes += row.data.length;
+  }
+  return out;
+}
+
+/**
+ * Gives room of dead tail rows back to the table. PostgreSQL does so by itself; the embedded database has nobody who does,
+ * and the tail would grow by the raw size of everything that is ever recorded.
+ */
+export async function sweepTail(db: Database): Promise<void> {
+  await db.execute(sql`vacuum ${recordingTail}`);
+}
+
+/** Trials that still stand as running though their recording is closed: the server stopped between the two. */
+export const endedUntold = (db: Database) =>
+  db.select({ trialId: trials.id, recordingId: recordings.id, endReason: recordings.endReason }).from(recordings)
+    .innerJoin(trials, eq(trials.id, recordings.trialId)).where(and(eq(recordings.state, 'closed'), inArray(trials.state, ['recording', 'away'])));
+
+/** @param nextBatch what the run wanted next. @returns false when the recording is not where the caller left it, and then nothing changed */
+export async function closeRecording(db: Database, id: string, nextBatch: number, values: Partial<NewRecording>, pyramid: readonly PyramidRow[]): Promise<boolean> {
+  return db.transaction(async (tx) => {
+    const closed = await tx.update(recordings).set({ ...values, state: 'closed' })
+      .where(and(eq(recordings.id, id), eq(recordings.state, 'growing'), eq(recordings.nextBatch, nextBatch))).returning({ id: recordings.id });
+    if (closed.length === 0) return false;
+    for (const rows of slices(pyramid)) await tx.insert(recordingPyramid).values(rows).onConflictDoNothing();
+    return true;
   });
 }
 

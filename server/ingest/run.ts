@@ -2,27 +2,32 @@
  * One growing recording in memory: what came, what is durable, what the next commit carries.
  *
  * A batch goes fresh -> (commit) -> open: durable in the tail -> (commit) -> part of a chunk. A commit that failed is
- * tried again with the same load, so sealing a chunk happens once.
+ * tried again with the same load, so sealing a chunk happens once, and storing the same load twice stores it once.
  */
 import type { DeviceId, RecordingId, TrialId } from '@shared/api/common';
+import type { Chunk } from '@shared/recording';
 import type { Flagger } from '@shared/flags';
-import type { LinkOptions } from '@shared/link';
+import type { LinkOptions, WallTime } from '@shared/link';
 import type { LiveFlag } from '../live/bus';
 import { takeBatch } from './batch-check';
+import { listGaps } from './gaps';
 import type { ChunkRow, Progress, PyramidRow, RecordingRow, TailRow } from './queries';
 import { asChunk, joinBatches, packTail, type ReceivedBatch } from './received-batch';
-import { createSealer, type Sealer } from './seal';
+import { createSealer, type Finished, type Sealer } from './seal';
 
 export interface RunLoad {
   readonly progress: Progress;
   readonly tail: TailRow | null;
-  readonly chunk: ChunkRow | null;
+  readonly chunks: readonly ChunkRow[];
   readonly pyramid: readonly PyramidRow[];
-  /** Tail rows below this batch are replaced by the chunk; null without one. */
+  /** Tail rows below this batch are replaced by the chunks; null without one. */
   readonly replacedBelow: number | null;
   /** Every batch below is durable once this load is. */
   readonly next: number;
 }
+
+/** Below this a chunk's own head would outweigh its samples: slow devices fill a chunk in more than its nominal time. */
+const FEWEST_IN_CHUNK = 200;
 
 export class Run {
   readonly id: RecordingId;
@@ -38,28 +43,34 @@ export class Run {
   durable: number;
   nextSample: number;
   lastUs: number;
+  /** Samples that came. */
+  samples: number;
   marks: RecordingRow['marks'];
+  gaps: RecordingRow['gaps'];
   flagger: Flagger | null = null;
   /** Flags that ended so far, and how many open ones the rooms were told last. */
   ended: LiveFlag[] = [];
   openTold = 0;
-  /** The device said `end`; closed when everything before is durable. */
-  ending: { reason: 'done' | 'stopped' | 'fault' | 'lost'; acknowledge: boolean } | null = null;
-  closed = false;
-  /** Server's monotonic ms when something came last. */
-  heardAtMs = 0;
+  /** When the run ends: closed as soon as everything before is durable. */
+  ending: 'done' | 'stopped' | 'fault' | 'lost' | null = null;
+  /** Server's monotonic ms when something of this run came last. */
+  heardAtMs = performance.now();
+  /** The connection that streams it; null while its device is away, or back without going on with it. */
+  by: object | null = null;
+  /** Best knowledge of when it started; null until the clock was compared. */
+  wall: WallTime | null = null;
   freshBytes = 0;
 
   private readonly sealer: Sealer;
-  private gaps: RecordingRow['gaps'];
   private gapsChanged = false;
   private marksChanged = false;
   private fresh: ReceivedBatch[] = [];
   private open: ReceivedBatch[] = [];
   /** Samples in sealed chunks. */
   private sealed = 0;
-  private samples: number;
-  private moving: { batches: ReceivedBatch[]; load: RunLoad } | null = null;
+  private moving: { open: ReceivedBatch[]; load: RunLoad } | null = null;
+  /** Flagged for a chunk however few samples there are: the run has ended. */
+  private finished: Finished | null = null;
 
   constructor(row: RecordingRow, private readonly options: LinkOptions) {
     this.id = row.id as RecordingId;
@@ -80,7 +91,7 @@ export class Run {
   }
 
   /** Goes on after a restart: stored chunks first, then what lay in the tail. */
-  restoreChunk(chunk: Parameters<Sealer['replay']>[0]): void {
+  restoreChunk(chunk: Chunk): void {
     this.sealer.replay(chunk);
     this.sealed += chunk.count;
   }
@@ -89,43 +100,36 @@ export class Run {
     this.open.push(...batches);
   }
 
-  /** @returns the batch as it was taken in and its samples' first stored index, or what is wrong with it */
-  take(batch: Parameters<typeof takeBatch>[0]): ReturnType<typeof takeBatch> {
+  /** @returns the samples of the batch as they will be stored, or what is wrong with it */
+  take(batch: Parameters<typeof takeBatch>[0]): Chunk | Exclude<ReturnType<typeof takeBatch>, ReceivedBatch> {
     const taken = takeBatch(batch, { rateHz: this.rateHz, channels: this.channels.length, startUs: this.startUs, nextSample: this.nextSample, lastUs: this.lastUs }, this.options);
     if ('code' in taken) return taken;
-    this.listGap(taken);
+    this.noteGaps(taken);
     this.fresh.push(taken);
     this.freshBytes += taken.values.byteLength + taken.timesUs.byteLength;
     this.nextBatch = taken.n + 1;
     this.nextSample = taken.first + taken.count;
     this.lastUs = taken.timesUs[taken.count - 1] ?? this.lastUs;
-    return taken;
-  }
-
-  /** Stored index of the first sample of a batch that was just taken. */
-  chunkOf(batch: ReceivedBatch) {
-    const chunk = asChunk(batch, this.samples);
-    this.samples += batch.count;
+    this.heardAtMs = performance.now();
+    const chunk = asChunk(taken, this.samples);
+    this.samples += taken.count;
     return chunk;
   }
 
-  mark(atS: number, label: string): void {
-    if (this.marks.some((each) => each.atS === atS && each.label === label)) return;
-    if (this.marks.length >= this.options.marksKept) return;
-    this.marks = [...this.marks, { atS, label }];
-    this.marksChanged = true;
+  private noteGaps(taken: ReceivedBatch): void {
+    const found = listGaps(taken, { lastUs: this.lastUs, nextSample: this.nextSample, rateHz: this.rateHz });
+    const room = this.options.gapsListed - this.gaps.length;
+    if (found.length === 0 || room <= 0) return;
+    this.gaps = [...this.gaps, ...found.slice(0, room)];
+    this.gapsChanged = true;
   }
 
-  private listGap({ timesUs }: ReceivedBatch): void {
-    const periodUs = 1e6 / this.rateHz;
-    let before = this.lastUs;
-    for (const at of timesUs) {
-      if (before >= 0 && at - before > 1.5 * periodUs && this.gaps.length < this.options.gapsListed) {
-        this.gaps = [...this.gaps, { startS: before / 1e6, endS: at / 1e6, missing: Math.max(1, Math.round((at - before) / periodUs) - 1) }];
-        this.gapsChanged = true;
-      }
-      before = at;
-    }
+  /** A mark that was sent twice is one mark. @returns whether it is new */
+  mark(atS: number, label: string): boolean {
+    if (this.marks.length >= this.options.marksKept || this.marks.some((each) => each.atS === atS && each.label === label)) return false;
+    this.marks = [...this.marks, { atS, label }];
+    this.marksChanged = true;
+    return true;
   }
 
   get hasWork(): boolean {
@@ -136,49 +140,71 @@ export class Run {
   load(): RunLoad | null {
     if (this.moving) return this.moving.load;
     if (!this.hasWork) return null;
-    const batches = this.fresh;
+    const { fresh } = this;
     this.fresh = [];
     this.freshBytes = 0;
-    const all = [...this.open, ...batches];
-    const count = all.reduce((sum, batch) => sum + batch.count, 0);
-    const due = count > 0 && (count >= this.options.chunkS * this.rateHz || this.ending !== null);
-    const next = (batches.at(-1)?.n ?? this.durable - 1) + 1;
-    const last = batches.at(-1);
-    const sealed = due ? this.sealer.seal(joinBatches(all, this.channels.length, this.sealed)) : null;
-    const samples = this.sealed + count;
-    if (due) {
-      this.sealed += count;
-      this.open = [];
-    }
-    const first = batches[0];
+    const next = (fresh.at(-1)?.n ?? this.durable - 1) + 1;
+    const last = fresh.at(-1);
+    const first = fresh[0];
+    const stretches = this.stretchesDue([...this.open, ...fresh]);
+    const sealed = stretches.map((batches) => {
+      const chunk = joinBatches(batches, this.channels.length, this.sealed);
+      this.sealed += chunk.count;
+      return this.sealer.seal(chunk);
+    });
+    const open = sealed.length > 0 ? [] : [...this.open, ...fresh];
     const load: RunLoad = {
       progress: {
-        id: this.id, nextBatch: next, samples,
+        id: this.id, nextBatch: next,
+        samples: this.sealed + open.reduce((sum, batch) => sum + batch.count, 0),
         nextSample: last ? last.first + last.count : this.nextSample,
         lastUs: last ? (last.timesUs[last.count - 1] ?? 0) : Math.max(0, this.lastUs),
         gaps: this.gapsChanged ? this.gaps : null,
         marks: this.marksChanged ? this.marks : null,
       },
-      tail: sealed || !first ? null : { recordingId: this.id, batch: first.n, batches: batches.length, data: packTail(batches) },
-      chunk: sealed?.chunk ?? null,
-      pyramid: sealed?.pyramid ?? [],
-      replacedBelow: sealed ? next : null,
+      tail: sealed.length > 0 || !first ? null : { recordingId: this.id, batch: first.n, batches: fresh.length, data: packTail(fresh) },
+      chunks: sealed.map(({ chunk }) => chunk),
+      pyramid: sealed.flatMap(({ pyramid }) => pyramid),
+      replacedBelow: sealed.length > 0 ? next : null,
       next,
     };
     this.gapsChanged = false;
     this.marksChanged = false;
-    this.moving = { batches: sealed ? [] : batches, load };
+    this.moving = { open, load };
     return load;
+  }
+
+  /** Batches to be sealed now, one list a chunk; none while there is less than a chunk of a run that goes on. */
+  private stretchesDue(batches: readonly ReceivedBatch[]): ReceivedBatch[][] {
+    const full = Math.max(FEWEST_IN_CHUNK, this.options.chunkS * this.rateHz);
+    const count = batches.reduce((sum, batch) => sum + batch.count, 0);
+    if (count === 0 || (count < full && this.ending === null)) return [];
+    const stretches: ReceivedBatch[][] = [[]];
+    let inLast = 0;
+    let left = count;
+    for (const batch of batches) {
+      // After a storm or a long outage there is much: chunks of the usual length, the rest with the last.
+      if (inLast >= full && left >= full / 2) {
+        stretches.push([]);
+        inLast = 0;
+      }
+      stretches.at(-1)?.push(batch);
+      inLast += batch.count;
+      left -= batch.count;
+    }
+    return stretches;
   }
 
   committed(): void {
     if (!this.moving) return;
-    this.open.push(...this.moving.batches);
+    this.open = this.moving.open;
     this.durable = this.moving.load.next;
     this.moving = null;
   }
 
-  finish(): ReturnType<Sealer['finish']> {
-    return this.sealer.finish();
+  /** What closing writes: made once, because a close that failed is tried again with the same values. */
+  finish(): Finished {
+    this.finished ??= this.sealer.finish();
+    return this.finished;
   }
 }

@@ -14,8 +14,14 @@ export interface Sealer {
   seal(chunk: Chunk): { chunk: ChunkRow; pyramid: PyramidRow[] };
   /** Takes a chunk that is stored already, to go on after it. */
   replay(chunk: Chunk): void;
-  /** What closing writes: the last blocks, and digest, gaps and statistics. */
-  finish(): { pyramid: PyramidRow[]; values: Pick<NewRecording, 'digest' | 'statistics' | 'gaps' | 'samples'> };
+  /** Only once. */
+  finish(): Finished;
+}
+
+/** What closing writes: the last blocks, and digest, gaps and statistics. */
+export interface Finished {
+  readonly pyramid: readonly PyramidRow[];
+  readonly values: Pick<NewRecording, 'digest' | 'statistics' | 'gaps' | 'samples'>;
 }
 
 /** @param gapsListed most gaps in the list; further ones show in the sample times only */

@@ -55,7 +55,7 @@ export async function writeRecording(db: Database, meta: RecordingToFile, chunks
     await commitRuns(db, { progress: [], tail: [], chunks: [sealed.chunk], pyramid: sealed.pyramid, replaced: [] });
   }
   const { pyramid, values } = sealer.finish();
-  await closeRecording(db, recording.id, { ...values, nextSample: samples, lastUs, endReason, closedAt: new Date(recording.startedAt.getTime() + lastUs / 1000) }, pyramid);
+  await closeRecording(db, recording.id, 0, { ...values, nextSample: samples, lastUs, endReason, closedAt: new Date(recording.startedAt.getTime() + lastUs / 1000) }, pyramid);
   const closed = await findRecording(db, recording.id);
   if (closed === null) throw new Error('The recording that was just filed is not there');
   return closed;

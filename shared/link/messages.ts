@@ -16,14 +16,15 @@ export const LINK_PROTOCOL = 'tautbook.link.v1';
 const us = z.number().min(0).max(Number.MAX_SAFE_INTEGER);
 /** Counts and indices fit a signed 32-bit integer: 24 days at 1 kHz. */
 const index = z.number().int().min(0).max(2_147_483_647);
-const block = z.instanceof(Uint8Array);
+const block: z.ZodType<Uint8Array> = z.instanceof(Uint8Array);
 export const runName = z.string().min(1).max(100);
 
 export const hello = z.object({
   type: z.literal('hello'),
   link: z.literal(LINK_VERSION),
   rig: z.object({ code: z.string().min(1).max(100), revision: z.number().int().positive() }),
-  rateHz: z.number(),
+  /** Judged with the fault RATE, not with the frame. */
+  rateHz: z.number().or(z.nan()),
   channels: z.array(z.string().max(64)).max(1024),
   firmware: z.string().max(200),
   deviceUs: us,

@@ -26,7 +26,9 @@ export const linkOptionTable = {
   retryFirstMs: { default: 100, unit: 'ms', sentence: 'Wait before a failed commit is tried again; doubled each time.' },
   retryMostMs: { default: 2_000, unit: 'ms', sentence: 'The longest wait before a failed commit is tried again.' },
   lostAfterMs: { default: 900_000, unit: 'ms', sentence: 'A run whose device stays away for this long is closed with reason lost.' },
-  liveEveryMs: { default: 16, unit: 'ms', sentence: 'How often arrived samples are told to the rooms.' },
+  sweepEveryMs: { default: 15_000, unit: 'ms', sentence: 'How often the room of samples that moved into chunks is given back.' },
+  queuedBytes: { default: 4_194_304, unit: 'bytes', sentence: 'Frames of one connection that may wait while an earlier one is being handled; above it its socket is not read.' },
+  flagsToldEveryMs: { default: 100, unit: 'ms', sentence: 'How often flags that are still going on are told to the rooms.' },
   gapsListed: { default: 2_000, unit: 'gaps', sentence: 'The most gaps listed with a recording; further ones show in its sample times only.' },
   marksKept: { default: 5_000, unit: 'marks', sentence: 'The most marks of a run.' },
 } as const;

@@ -1,7 +1,7 @@
 /**
  * What happened in the demo lab: studies, participants, visits, trials with their troubles, and what people wrote.
  *
- * Days count from the day of seeding (0: today); hours are of the server's own clock. A note stands at a trouble of its
+ * Days count from the day of seeding; hours are of the server's own clock. A note stands at a trouble of its
  * trial (`at`) or at a second (`atS`).
  */
 import type { TroubleWish } from '../../simulator';
@@ -36,8 +36,7 @@ export type DemoSession = {
   participant: string;
   rig: { code: 'heron-8' | 'wren-8'; revision: number };
   by: CastName;
-  day: number;
-  hour: number;
+  when: { day: number; hour: number } | { fromNowH: number };
   closed?: boolean;
   trials: readonly DemoTrial[];
 };
@@ -81,7 +80,7 @@ const sedge: DemoStudy = {
   ],
   sessions: [
     {
-      participant: 'SG-02', rig: heron1, by: 'operator', day: -13, hour: 10, closed: true,
+      participant: 'SG-02', rig: heron1, by: 'operator', when: { day: -13, hour: 10 }, closed: true,
       trials: [{
         task: 'reach', condition: 'Q',
         run: {
@@ -97,7 +96,7 @@ const sedge: DemoStudy = {
       }],
     },
     {
-      participant: 'SG-03', rig: heron2, by: 'operator', day: -4, hour: 9, closed: true,
+      participant: 'SG-03', rig: heron2, by: 'operator', when: { day: -4, hour: 9 }, closed: true,
       trials: [
         {
           task: 'pick-and-place', condition: 'R',
@@ -141,7 +140,7 @@ const sedge: DemoStudy = {
       ],
     },
     {
-      participant: 'SG-05', rig: heron2, by: 'operator', day: 0, hour: 9,
+      participant: 'SG-05', rig: heron2, by: 'operator', when: { fromNowH: -1.5 },
       trials: [
         {
           task: 'pick-and-place', condition: 'Q',
@@ -160,11 +159,11 @@ const sedge: DemoStudy = {
       ],
     },
     {
-      participant: 'SG-06', rig: heron2, by: 'operator', day: 0, hour: 15,
+      participant: 'SG-06', rig: heron2, by: 'operator', when: { fromNowH: 2 },
       trials: [{ task: 'reach', condition: 'R' }, { task: 'pick-and-place', condition: 'R' }, { task: 'press', condition: 'Q' }, { task: 'pick-and-place', condition: 'Q' }],
     },
     {
-      participant: 'SG-07', rig: heron2, by: 'lead', day: 1, hour: 10,
+      participant: 'SG-07', rig: heron2, by: 'lead', when: { day: 1, hour: 10 },
       trials: [{ task: 'pick-and-place', condition: 'Q' }, { task: 'pick-and-place', condition: 'R' }],
     },
   ],
@@ -178,7 +177,7 @@ const mortise: DemoStudy = {
   conditions: [{ blindCode: 'K', label: 'Low pretension' }, { blindCode: 'M', label: 'High pretension' }],
   tasks: [{ code: 'trace', title: 'Trace the ring', timeLimitS: 45 }, { code: 'pick-and-place', title: 'Pick a block and place it', timeLimitS: 60 }],
   members: [
-    { who: 'lead', role: 'lead', blind: true },
+    { who: 'lead', role: 'lead', blind: false },
     { who: 'secondOperator', role: 'operator', blind: false },
     { who: 'clinician', role: 'clinician', blind: true },
   ],
@@ -187,7 +186,7 @@ const mortise: DemoStudy = {
   ],
   sessions: [
     {
-      participant: 'MT-12', rig: wren, by: 'secondOperator', day: -2, hour: 13, closed: true,
+      participant: 'MT-12', rig: wren, by: 'secondOperator', when: { day: -2, hour: 13 }, closed: true,
       trials: [
         {
           task: 'trace', condition: 'K',
@@ -207,7 +206,7 @@ const mortise: DemoStudy = {
         },
       ],
     },
-    { participant: 'MT-14', rig: wren, by: 'secondOperator', day: 1, hour: 11, trials: [{ task: 'trace', condition: 'M' }, { task: 'trace', condition: 'K' }, { task: 'pick-and-place', condition: 'M' }] },
+    { participant: 'MT-14', rig: wren, by: 'secondOperator', when: { day: 1, hour: 11 }, trials: [{ task: 'trace', condition: 'M' }, { task: 'trace', condition: 'K' }, { task: 'pick-and-place', condition: 'M' }] },
   ],
 };
 

@@ -1,23 +1,21 @@
-import { count, eq } from 'drizzle-orm';
+/** What the seed keeps for itself: that it was here, and the demo device's key, which no page ever shows again. */
+import { eq } from 'drizzle-orm';
 import type { Database } from '../engine';
-import { people, recordings, settings } from '../schema';
+import { people, settings } from '../schema';
 
 const key = 'demo-lab';
 
-export async function findDemoLab(db: Database): Promise<unknown> {
+export type DemoTrace = { deviceName: string; deviceKey: string };
+
+export async function findDemoTrace(db: Database): Promise<DemoTrace | null> {
   const [row] = await db.select({ value: settings.value }).from(settings).where(eq(settings.key, key));
-  return row?.value ?? null;
+  return row ? (row.value as DemoTrace) : null;
 }
 
-export async function keepDemoLab(db: Database, value: unknown): Promise<void> {
-  await db.insert(settings).values({ key, value });
+export async function writeDemoTrace(db: Database, trace: DemoTrace): Promise<void> {
+  await db.insert(settings).values({ key, value: trace });
 }
 
-export async function hasPeople(db: Database): Promise<boolean> {
-  const [row] = await db.select({ n: count() }).from(people);
-  return (row?.n ?? 0) > 0;
-}
-
-export async function fileUnder(db: Database, recordingId: string, trialId: string): Promise<void> {
-  await db.update(recordings).set({ trialId }).where(eq(recordings.id, recordingId));
+export async function anybodyThere(db: Database): Promise<boolean> {
+  return (await db.select({ id: people.id }).from(people).limit(1)).length > 0;
 }
