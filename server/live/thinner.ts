@@ -5,11 +5,12 @@
  * and saturation are told as flags, so a short one is not lost by thinning.
  */
 import type { Chunk } from '@shared/recording';
+import { shownEvery } from '@shared/api/live';
 import { float32Block, float64Block, pack } from '@shared/link';
 import type { BusEvents } from './bus';
 
-/** About so many samples a second reach a screen: more than its pixels in a stave of ten seconds. */
-const SHOWN_HZ = 250;
+/** What waits for a frame at most, samples: four seconds. */
+const MOST_WAITING = 1000;
 
 export class Thinner {
   private pending: { timeUs: number; values: Float32Array }[] = [];
@@ -19,12 +20,12 @@ export class Thinner {
 
   push({ chunk, rateHz, ...about }: BusEvents['samples']): void {
     this.last = about;
-    const every = Math.max(1, Math.round(rateHz / SHOWN_HZ));
+    const every = shownEvery(rateHz);
     let i = this.skip;
     for (; i < chunk.count; i += every) this.pending.push({ timeUs: chunk.timesUs[i] as number, values: sampleAt(chunk, i) });
     this.skip = i - chunk.count;
     // Nobody took a frame for seconds: the oldest go, newest first is what a late viewer wants.
-    if (this.pending.length > 4 * SHOWN_HZ) this.pending.splice(0, this.pending.length - 4 * SHOWN_HZ);
+    if (this.pending.length > MOST_WAITING) this.pending.splice(0, this.pending.length - MOST_WAITING);
   }
 
   /** One MessagePack frame of everything since the last; null when nothing came. */

@@ -42,6 +42,12 @@ export const liveFromServer = z.discriminatedUnion('type', [
 ]);
 export type LiveFromServer = z.infer<typeof liveFromServer>;
 
+/**
+ * Every so many samples of a running trial one goes to the screens: about 250 a second, more than a stave of ten seconds has
+ * pixels.
+ */
+export const shownEvery = (rateHz: number): number => Math.max(1, Math.round(rateHz / 250));
+
 /** A thinned stretch of a running trial (MessagePack): newest samples of all channels, about 30 frames a second. */
 export const liveSamples = z.object({
   type: z.literal('samples'),

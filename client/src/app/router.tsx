@@ -6,6 +6,7 @@ import { entranceRoutes } from '../features/entrance';
 import { outboxRoutes } from '../features/outbox';
 import { peopleRoutes } from '../features/people';
 import { rigRoutes } from '../features/rigs';
+import { runRoutes } from '../features/run';
 import { sessionRoutes } from '../features/sessions';
 import { studyRoutes } from '../features/studies';
 import { todayRoutes } from '../features/today';
@@ -50,6 +51,7 @@ export function createPages(queries: QueryClient) {
             ...todayRoutes,
             ...studyRoutes,
             ...sessionRoutes,
+            ...runRoutes,
             ...trialRoutes,
             ...rigRoutes,
             ...deviceRoutes,

@@ -1,7 +1,7 @@
 import type { RouteObject } from 'react-router-dom';
 import { page } from '../../lib/page';
 
-export { rigsQuery } from './queries';
+export { rigRevisionQuery, rigsQuery } from './queries';
 
 export const rigRoutes: RouteObject[] = [
   page('rigs', async () => (await import('./RigsPage')).RigsPage),

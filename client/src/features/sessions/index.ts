@@ -3,8 +3,9 @@ import { page } from '../../lib/page';
 
 export { sessionQuery, studySessionsQuery } from './queries';
 export { OutcomeDialog } from './OutcomeDialog';
+export { OutcomeForm } from './OutcomeForm';
 export { SessionTable } from './SessionTable';
-export { TrialName, TrialStateWord } from './TrialWords';
+export { conditionName, TrialName, TrialStateWord } from './TrialWords';
 
 export const sessionRoutes: RouteObject[] = [
   page('studies/:studyId/sessions/new', async () => (await import('./PlanSessionPage')).PlanSessionPage),

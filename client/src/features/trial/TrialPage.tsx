@@ -9,7 +9,8 @@ import { ButtonLink } from '../../ui/Button';
 import { Empty } from '../../ui/Empty';
 import { Page, Section } from '../../ui/Page';
 import { recordingSource } from '../../replay/recording-source';
-import { rigRevisionQuery, trialQuery } from './queries';
+import { rigRevisionQuery } from '../rigs';
+import { trialQuery } from './queries';
 import { TrialSpread } from './TrialSpread';
 
 /** One trial as a spread: scene, margin, stave. */

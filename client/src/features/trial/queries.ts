@@ -1,8 +1,7 @@
 import { queryOptions, useMutation, useQueryClient, type QueryClient } from '@tanstack/react-query';
-import type { NoteId, RigRevisionId, TrialId } from '@shared/api/common';
+import type { NoteId, TrialId } from '@shared/api/common';
 import type { BodyInput } from '@shared/api/contract';
 import { addNote, addReply, editNote, listNoteVersions, listNotes, resolveNote, type Note } from '@shared/api/notes';
-import { getRigRevision } from '@shared/api/rigs';
 import { getTrial, listFlags } from '@shared/api/sessions';
 import { call } from '../../lib/api';
 
@@ -11,13 +10,6 @@ export const trialQuery = (trialId: TrialId) => queryOptions({
   queryFn: ({ signal }) => call(getTrial, { params: { trialId }, signal }),
   /** A growing recording is asked for again, so that the page grows with it. */
   refetchInterval: (query) => (query.state.data?.recording?.state === 'growing' ? 2000 : false),
-});
-
-/** A revision never changes: once read it is known. */
-export const rigRevisionQuery = (rigRevisionId: RigRevisionId) => queryOptions({
-  queryKey: ['rig-revision', rigRevisionId],
-  queryFn: ({ signal }) => call(getRigRevision, { params: { rigRevisionId }, signal }),
-  staleTime: Infinity,
 });
 
 export const flagsQuery = (trialId: TrialId) => queryOptions({

@@ -73,7 +73,7 @@ export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProp
       orbit.update();
       return;
     }
-    const stand = standOf(name, stage.centre, stage.radius, size.width / Math.max(1, size.height));
+    const stand = standOf(name, stage.centre, stage.half, size.width / Math.max(1, size.height));
     const from = { position: camera.position.clone(), target: orbit.target.clone() };
     const still = !placed.current || matchMedia('(prefers-reduced-motion: reduce)').matches;
     placed.current = true;

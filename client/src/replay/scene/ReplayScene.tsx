@@ -9,6 +9,7 @@ import type { CameraName } from './cameras';
 import { makeRigStage, type RigStage } from './rig-stage';
 import { SceneCanvas } from './SceneCanvas';
 import { createStageDriver } from './stage-driver';
+import { webglHere } from './webgl-here';
 
 export interface ReplaySceneProps {
   readonly file: RigFile;
@@ -39,21 +40,37 @@ export function ReplayScene({ file, player, camera, onCamera, label, instead }: 
   );
 }
 
+/** A processor that draws by itself has other work too: the stave comes first. */
+const SOFTWARE_EVERY_MS = 80;
+
 /** Inside the canvas, because only there a frame can be asked for. */
 function Drive({ stage, file, player, poseListeners }: { stage: RigStage; file: RigFile; player: Player; poseListeners: Set<() => void> }) {
   const invalidate = useThree((state) => state.invalidate);
+  const everyMs = webglHere() === 'software' ? SOFTWARE_EVERY_MS : 0;
   useEffect(() => {
     const drive = createStageDriver(stage, player.source, rigModel(file));
-    const now = () => {
+    let drawnMs = -Infinity;
+    let later: ReturnType<typeof setTimeout> | undefined;
+    const draw = () => {
+      clearTimeout(later);
+      later = undefined;
+      drawnMs = performance.now();
       drive(player.clock.atS);
       for (const listener of poseListeners) listener();
       invalidate();
     };
-    now();
+    // At once when the last picture is old enough, else when it will be: the newest moment is always drawn in the end.
+    const now = () => {
+      const waitMs = everyMs - (performance.now() - drawnMs);
+      if (waitMs <= 0) draw();
+      else later ??= setTimeout(draw, waitMs);
+    };
+    draw();
     const stops = [player.clock.onMoment(now), player.source.onChange(now)];
     return () => {
+      clearTimeout(later);
       for (const stop of stops) stop();
     };
-  }, [stage, file, player, poseListeners, invalidate]);
+  }, [stage, file, player, poseListeners, invalidate, everyMs]);
   return null;
 }

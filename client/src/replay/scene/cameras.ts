@@ -14,20 +14,35 @@ export interface Stand {
 /** Vertical field of view, degrees: a long lens, so that lengths stay comparable across the frame. */
 export const FIELD_OF_VIEW = 27;
 
+/** Room round the frame for the exits' numbers, m, and the share of the picture's height and width that words leave free. */
+const NUMBERS_M = 0.055;
+const FREE = { across: 0.96, up: 0.86 };
+
 /**
- * @param radius half the frame's diagonal, m
- * @param aspect width over height of the picture: on a narrow one the reader steps back
+ * As near as the whole frame stays in the picture.
+ *
+ * @param half   half the frame's size along x, y, z, m
+ * @param aspect width over height of the picture
  */
-export function standOf(name: Exclude<CameraName, 'hand'>, centre: Vector3, radius: number, aspect: number): Stand {
-  const half = (FIELD_OF_VIEW / 2) * (Math.PI / 180);
-  const fit = (radius * (name === 'free' ? 0.92 : 0.86)) / Math.sin(half) / Math.min(1, aspect * 0.95);
+export function standOf(name: Exclude<CameraName, 'hand'>, centre: Vector3, half: Vector3, aspect: number): Stand {
   const from: Record<Exclude<CameraName, 'hand'>, Vector3> = {
     free: new Vector3(0.52, -1, 0.42),
     front: new Vector3(0, -1, 0.06),
     side: new Vector3(1, 0, 0.06),
     top: new Vector3(0, -0.0001, 1),
   };
-  return { position: from[name].normalize().multiplyScalar(fit).add(centre), target: centre.clone() };
+  const toCamera = from[name].normalize();
+  const right = new Vector3(0, 0, 1).cross(toCamera).normalize();
+  const up = toCamera.clone().cross(right);
+  const tangent = Math.tan((FIELD_OF_VIEW / 2) * (Math.PI / 180));
+  const corner = new Vector3();
+  let distance = 0;
+  for (let i = 0; i < 8; i += 1) {
+    corner.set(i & 1 ? 1 : -1, i & 2 ? 1 : -1, i & 4 ? 1 : -1).multiply(half).addScaledVector(corner.clone().normalize(), NUMBERS_M);
+    const aside = Math.max(Math.abs(corner.dot(right)) / (tangent * aspect * FREE.across), Math.abs(corner.dot(up)) / (tangent * FREE.up));
+    distance = Math.max(distance, corner.dot(toCamera) + aside);
+  }
+  return { position: toCamera.multiplyScalar(distance).add(centre), target: centre.clone() };
 }
 
 /** Behind and above the palm, looking where it looks, turning with it. */

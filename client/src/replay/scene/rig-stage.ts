@@ -28,6 +28,8 @@ export interface RigStage {
   /** Middle of the frame and half its diagonal, m: where the cameras look. */
   readonly centre: Vector3;
   readonly radius: number;
+  /** Half the frame's size along x, y, z, m. */
+  readonly half: Vector3;
   readonly palmPosition: Vector3;
   readonly palmTurn: Quaternion;
   setPose(pose: Pose | null, cables: readonly StagedCable[]): void;
@@ -52,6 +54,7 @@ export function makeRigStage(file: RigFile): RigStage {
   const frameMax = new Vector3().fromArray(file.frame.max);
   const centre = frameMin.clone().add(frameMax).multiplyScalar(0.5);
   const radius = frameMin.distanceTo(frameMax) / 2;
+  const half = frameMax.clone().sub(frameMin).multiplyScalar(0.5);
 
   const lambert = () => new MeshLambertMaterial();
   const cableMaterials = { taut: lambert(), near: lambert(), saturated: lambert(), slack: lambert(), missing: lambert() };
@@ -142,6 +145,7 @@ export function makeRigStage(file: RigFile): RigStage {
     group,
     centre,
     radius,
+    half,
     palmPosition: hand.position,
     palmTurn: hand.quaternion,
     setPose,

@@ -17,7 +17,8 @@ export interface StaveProps {
   readonly others?: readonly OtherReader[];
   /** Room the page may take, CSS px; strings give way down to their least height. */
   readonly height: number;
-  readonly showNotes?: boolean;
+  /** The newest seconds of a running trial: a picture that moves by itself, without a line to take hold of. */
+  readonly live?: boolean;
   readonly onSelect?: (span: Span | null) => void;
   readonly onFlag?: (ids: readonly string[]) => void;
   readonly onNote?: (ids: readonly string[]) => void;
@@ -30,7 +31,7 @@ const nothing: readonly OtherReader[] = [];
 /** How often a voice may be told the position while the clock runs, ms. */
 const TELL_EVERY_MS = 1000;
 
-export function Stave({ player, content, label, others = nothing, height, showNotes = true, onSelect, onFlag, onNote, onKeyDown, onPainter }: StaveProps) {
+export function Stave({ player, content, label, others = nothing, height, live = false, onSelect, onFlag, onNote, onKeyDown, onPainter }: StaveProps) {
   const frame = useRef<HTMLDivElement>(null);
   const below = useRef<HTMLCanvasElement>(null);
   const above = useRef<HTMLCanvasElement>(null);
@@ -48,14 +49,14 @@ export function Stave({ player, content, label, others = nothing, height, showNo
   useEffect(() => {
     const [box, lower, upper] = [frame.current, below.current, above.current];
     if (!box || !lower || !upper) return;
-    const made = createStavePainter({ ...player, below: lower, above: upper, showNotes, onHeight: setPageHeight }, firstContent(), firstPalette());
+    const made = createStavePainter({ ...player, below: lower, above: upper, live, onHeight: setPageHeight }, firstContent(), firstPalette());
     painter.current = made;
     tellPainter(made);
     const measure = () => made.setSize(box.clientWidth, roomNow(), Math.min(3, devicePixelRatio || 1));
     measure();
     const observer = new ResizeObserver(measure);
     observer.observe(box);
-    const stopPointers = listenToPointers(box, { ...player, painter: made, onSelect: select, onFlag: flag, onNote: note });
+    const stopPointers = live ? () => undefined : listenToPointers(box, { ...player, painter: made, onSelect: select, onFlag: flag, onNote: note });
     return () => {
       observer.disconnect();
       stopPointers();
@@ -63,7 +64,7 @@ export function Stave({ player, content, label, others = nothing, height, showNo
       painter.current = null;
       tellPainter(null);
     };
-  }, [player, showNotes]);
+  }, [player, live]);
 
   useEffect(() => painter.current?.setContent(content), [content]);
   useEffect(() => painter.current?.setPalette(palette), [palette]);
@@ -72,18 +73,13 @@ export function Stave({ player, content, label, others = nothing, height, showNo
     const box = frame.current;
     if (box) painter.current?.setSize(box.clientWidth, height, Math.min(3, devicePixelRatio || 1));
   }, [height]);
-  useSliderWords(frame, player, content);
+  useSliderWords(frame, player, content, live);
 
   return (
     <div
       ref={frame}
-      role="slider"
-      tabIndex={0}
+      {...(live ? { role: 'img' } : { role: 'slider', tabIndex: 0, 'aria-orientation': 'horizontal', 'aria-valuemin': 0, 'aria-valuemax': 0, 'aria-valuenow': 0 })}
       aria-label={label}
-      aria-orientation="horizontal"
-      aria-valuemin={0}
-      aria-valuemax={0}
-      aria-valuenow={0}
       onKeyDown={onKeyDown}
       data-testid="stave"
       className="relative w-full touch-pan-y select-none outline-offset-[-2px]"
@@ -96,10 +92,10 @@ export function Stave({ player, content, label, others = nothing, height, showNo
 }
 
 /** The slider's value and words, written past React: they change with the clock. */
-function useSliderWords(frame: React.RefObject<HTMLDivElement | null>, { clock, source }: Player, { limits }: StaveContent) {
+function useSliderWords(frame: React.RefObject<HTMLDivElement | null>, { clock, source }: Player, { limits }: StaveContent, live: boolean) {
   useEffect(() => {
     const box = frame.current;
-    if (!box) return;
+    if (!box || live) return;
     const moment = emptyMoment(source.channels);
     let lastMs = -Infinity;
     const write = () => {
@@ -120,5 +116,5 @@ function useSliderWords(frame: React.RefObject<HTMLDivElement | null>, { clock, 
     return () => {
       for (const stop of stops) stop();
     };
-  }, [frame, clock, source, limits]);
+  }, [frame, clock, source, limits, live]);
 }

@@ -11,6 +11,8 @@ export interface PageInput {
   /** Room that the page may take; strings and ribbons give way down to their least height. */
   readonly height: number;
   readonly notes: boolean;
+  /** The strip of the whole recording at the foot. */
+  readonly overview: boolean;
 }
 
 export interface Lane {
@@ -36,7 +38,7 @@ export interface PageLayout {
 const ROW = { least: 15, most: 26 };
 const RIBBON = { least: 24, most: 34 };
 
-export function layOutPage({ width, cables, ribbons, height, notes }: PageInput): PageLayout {
+export function layOutPage({ width, cables, ribbons, height, notes, overview: hasOverview }: PageInput): PageLayout {
   const narrow = width < 560;
   const left = narrow ? 66 : 104;
   const right = narrow ? 12 : 24;
@@ -44,7 +46,7 @@ export function layOutPage({ width, cables, ribbons, height, notes }: PageInput)
   const slipLine = 19;
   const slipLines = notes ? (narrow ? 1 : 2) : 0;
   const slips = { lines: slipLines, lineHeight: slipLine, height: notes ? 10 + slipLines * slipLine : 4 };
-  const fixed = marks.top + marks.height + 6 + slips.height + 6 + 20 + 30;
+  const fixed = marks.top + marks.height + 6 + slips.height + 6 + 20 + (hasOverview ? 30 : 6);
   // Strings first, ribbons with what is left.
   const rowsWanted = cables * ROW.most + ribbons * RIBBON.most;
   const share = Math.min(1, Math.max(0, (height - fixed - cables * ROW.least - ribbons * RIBBON.least) / Math.max(1, rowsWanted - cables * ROW.least - ribbons * RIBBON.least)));
@@ -55,7 +57,7 @@ export function layOutPage({ width, cables, ribbons, height, notes }: PageInput)
   const ribbonsTop = slipsTop + slips.height + 6;
   const lanes = Array.from({ length: ribbons }, (_, i) => ({ top: ribbonsTop + i * ribbonHeight, height: ribbonHeight }));
   const timesTop = ribbonsTop + ribbons * ribbonHeight;
-  const overview = { top: timesTop + 20, height: 24 };
+  const overview = { top: timesTop + 20, height: hasOverview ? 24 : 0 };
   return {
     width,
     height: overview.top + overview.height + 6,

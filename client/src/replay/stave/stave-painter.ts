@@ -54,8 +54,8 @@ export interface StavePorts {
   readonly source: Source;
   readonly clock: Clock;
   readonly view: View;
-  /** A page without room for slips while it runs live. */
-  readonly showNotes: boolean;
+  /** A page that moves along with a running trial: no room for slips, no strip of the whole. */
+  readonly live: boolean;
   /** Told when the layout's height changed. */
   readonly onHeight: (height: number) => void;
 }
@@ -67,7 +67,7 @@ export function createStavePainter(ports: StavePorts, firstContent: StaveContent
   let others: readonly OtherReader[] = [];
   let density = 1;
   let size = { width: 0, height: 0 };
-  let layout = layOutPage({ width: 0, height: 0, cables: source.channels.cableCount, ribbons: content.ribbons.length, notes: ports.showNotes });
+  let layout = layOutPage({ width: 0, height: 0, cables: source.channels.cableCount, ribbons: content.ribbons.length, notes: !ports.live, overview: !ports.live });
   let columns: Columns = makeColumns(0);
   let strip: { overview: unknown; width: number; extentS: number; columns: Columns | null } = { overview: null, width: 0, extentS: 0, columns: null };
   let marks: readonly DrawnMark[] = [];
@@ -87,7 +87,7 @@ export function createStavePainter(ports: StavePorts, firstContent: StaveContent
 
   const place = () => {
     const before = layout.height;
-    layout = layOutPage({ ...size, cables: source.channels.cableCount, ribbons: content.ribbons.length, notes: ports.showNotes });
+    layout = layOutPage({ ...size, cables: source.channels.cableCount, ribbons: content.ribbons.length, notes: !ports.live, overview: !ports.live });
     const width = Math.max(0, Math.round(layout.across * density));
     if (columns.min.length !== width) columns = makeColumns(width);
     for (const canvas of [ports.below, ports.above]) {
@@ -151,7 +151,7 @@ export function createStavePainter(ports: StavePorts, firstContent: StaveContent
     drawMarks(context, marks, palette, content.litId);
     slips = placeSlips(context, content.notes, layout, x);
     drawSlips(context, slips, layout, x, palette, content.litId);
-    drawOverview(context, stripColumns(), { source, limits: content.limits, flags: content.flags, notes: content.notes }, layout, span, palette);
+    if (!ports.live) drawOverview(context, stripColumns(), { source, limits: content.limits, flags: content.flags, notes: content.notes }, layout, span, palette);
   };
 
   /** The same scale at every zoom: taken from the whole recording, so that a ribbon does not breathe while zooming. */
@@ -221,7 +221,8 @@ export function createStavePainter(ports: StavePorts, firstContent: StaveContent
     drawReadingLine(context, x(clock.atS), layout, palette, held);
     source.momentAt(clock.atS, moment);
     drawTensionValues(context, moment, source.channels.tensions, content.limits, layout, palette);
-    drawRibbonValues(context, content.ribbons, content.ribbons.map((ribbon) => ribbonAt(ribbon, pieces, clock.atS, moment.known)), layout, palette);
+    drawRibbonValues(context, content.ribbons, content.ribbons.map((ribbon) => ribbonAt(ribbon, pieces, clock.atS, moment.known, ports.live ? LOOK_BACK : 0)), layout, palette);
+    if (ports.live) return;
     // On the strip, where the line stands in the whole.
     const extent = source.extent();
     const share = lengthOf(extent) > 0 ? (clock.atS - extent.fromS) / lengthOf(extent) : 0;
@@ -278,13 +279,21 @@ export function createStavePainter(ports: StavePorts, firstContent: StaveContent
   };
 }
 
+/** Samples. */
+const LOOK_BACK = 8;
+
 /** Value of a ribbon at the reading line, from what is drawn. */
-function ribbonAt(ribbon: Ribbon, pieces: readonly Piece[], atS: number, known: string): number {
+function ribbonAt(ribbon: Ribbon, pieces: readonly Piece[], atS: number, known: string, lookBack: number): number {
   if (known === 'gap' || known === 'outside') return Number.NaN;
   const piece = pieces.find(({ span }) => atS >= span.fromS && atS < span.toS);
   if (!piece) return Number.NaN;
   const index = indexAt(piece.stretch.startsS, atS);
   if (index < 0) return Number.NaN;
   const series = ribbon.series(piece.stretch);
-  return series.mean[series.offset + index] ?? Number.NaN;
+  // Measures over a window of time have no value at the very end of a running trial: the last one they have stands in.
+  for (let i = index; i >= Math.max(0, index - lookBack); i -= 1) {
+    const value = series.mean[series.offset + i] ?? Number.NaN;
+    if (Number.isFinite(value)) return value;
+  }
+  return Number.NaN;
 }

@@ -1,0 +1,108 @@
+/** What a running trial tells: its samples into a live source, its flags and marks into the page. */
+import { useEffect, useMemo, useState } from 'react';
+import { unpack } from 'msgpackr/unpack';
+import type { TrialId } from '@shared/api/common';
+import { liveSamples, shownEvery, type LiveFromServer } from '@shared/api/live';
+import type { RecordingMeta } from '@shared/api/sessions';
+import { parseChannels } from '@shared/recording/channels';
+import { createLiveSource, LIVE_PAGE_S, type LiveSource } from '../../replay/live/live-source';
+import { createPlayer, type Player } from '../../replay/player';
+import { loadWindow } from '../../replay/recording-source';
+import type { MarkedFlag } from '../../replay/stave/draw-marks';
+
+export interface LiveFlag extends MarkedFlag {
+  readonly open: boolean;
+}
+
+export interface Mark {
+  readonly atS: number;
+  readonly label: string;
+}
+
+/** A player over a source that grows by itself; its clock stands at the newest sample. */
+export interface LivePlayer extends Player {
+  readonly source: LiveSource;
+}
+
+/** Null when the recording's channels do not fit the rig. */
+export function useLivePlayer(recording: RecordingMeta, cableCount: number): LivePlayer | null {
+  const { id, rateHz } = recording;
+  const channels = recording.channels.join(' ');
+  const player = useMemo(() => {
+    const parsed = parseChannels(channels.split(' '), cableCount);
+    if (!parsed.ok) return null;
+    const source = createLiveSource(parsed.map, rateHz / shownEvery(rateHz));
+    return { ...createPlayer(source), source };
+  }, [channels, cableCount, rateHz]);
+
+  useEffect(() => {
+    if (!player) return;
+    const { source, clock } = player;
+    const stopPlayer = player.start();
+    const stopSeeking = source.onChange(() => clock.seek(source.newestS));
+    return () => {
+      stopSeeking();
+      stopPlayer();
+    };
+  }, [player]);
+
+  // The seconds before this page was opened, so that a reload in the middle of a trial shows no blank page.
+  const channelCount = recording.channels.length;
+  const [openedAtS] = useState(recording.durationS);
+  useEffect(() => {
+    if (!player) return;
+    const { source } = player;
+    const controller = new AbortController();
+    const fetchBefore = (toS: number) => {
+      const span = { fromS: Math.max(0, toS - LIVE_PAGE_S), toS };
+      loadWindow(id, channelCount)(span, Math.round(LIVE_PAGE_S * source.rateHz), controller.signal).then(
+        (stretch) => source.putBefore(stretch),
+        // What came before is only missing from the moving page; the recording has it.
+        () => undefined,
+      );
+    };
+    if (openedAtS > 0) fetchBefore(openedAtS + 1);
+    // The room was joined a moment after the first sample: those in between are in the book by the time a second has come.
+    let firstS: number | null = null;
+    const stop = source.onChange(() => {
+      firstS ??= source.newestS;
+      if (source.newestS < firstS + 1) return;
+      stop();
+      if (firstS > 0) fetchBefore(firstS + 0.5);
+    });
+    return () => {
+      stop();
+      controller.abort();
+    };
+  }, [player, id, channelCount, openedAtS]);
+  return player;
+}
+
+/** Puts a frame of the live socket into the source, when it is of this trial. */
+export function takeFrame(frame: Uint8Array, trialId: TrialId, source: LiveSource): void {
+  const parsed = liveSamples.safeParse(unpack(frame));
+  if (!parsed.success || parsed.data.trial !== trialId) return;
+  const { count, timesS, values } = parsed.data;
+  const width = source.channels.names.length;
+  if (timesS.byteLength !== count * 8 || values.byteLength !== count * width * 4) return;
+  source.take(new Float64Array(aligned(timesS)), new Float32Array(aligned(values)));
+}
+
+/** Bytes of a frame lie where they came to lie; typed arrays want them at a multiple of their size. */
+const aligned = (bytes: Uint8Array): ArrayBuffer => bytes.slice().buffer;
+
+/** Flags and marks of a trial as they come; told anew for each trial. */
+export function useLiveWords(trialId: TrialId) {
+  const [words, setWords] = useState<{ trialId: TrialId; flags: readonly LiveFlag[]; marks: readonly Mark[] }>({ trialId, flags: [], marks: [] });
+  const own = words.trialId === trialId ? words : { trialId, flags: [], marks: [] };
+  const onMessage = (message: LiveFromServer) => {
+    if (message.type !== 'flags' && message.type !== 'mark') return;
+    if (message.trialId !== trialId) return;
+    setWords((before) => {
+      const kept = before.trialId === trialId ? before : { trialId, flags: [], marks: [] };
+      if (message.type === 'mark') return { ...kept, marks: [...kept.marks, { atS: message.atS, label: message.label }] };
+      return { ...kept, flags: message.flags.map((flag) => ({ ...flag, id: `${flag.kind} ${flag.cable} ${flag.startS}` })) };
+    });
+  };
+  return { ...own, onMessage };
+}
