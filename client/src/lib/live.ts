@@ -17,6 +17,8 @@ export interface RoomListener {
 
 const FIRST_WAIT_MS = 400;
 const LONGEST_WAIT_MS = 10_000;
+/** After the last room was left: a page that is turned joins the next one in a moment, on the same line. */
+const LINGER_MS = 2_000;
 const ALIVE_EVERY_MS = 20_000;
 /** No word for so long means the line is dead though nobody closed it. */
 const SILENCE_MS = 50_000;
@@ -25,6 +27,7 @@ const rooms = new Map<string, { listeners: Set<RoomListener>; state: RoomState }
 let socket: WebSocket | null = null;
 let waitMs = FIRST_WAIT_MS;
 let retry: ReturnType<typeof setTimeout> | undefined;
+let lingering: ReturnType<typeof setTimeout> | undefined;
 let beat: ReturnType<typeof setInterval> | undefined;
 let lastWordAt = 0;
 
@@ -93,6 +96,13 @@ function open(): void {
   };
 }
 
+function hangUp(): void {
+  const leaving = socket;
+  socket = null;
+  clearInterval(beat);
+  leaving?.close();
+}
+
 /** Joins a room; the last one to leave it leaves it for the page. @returns how to leave */
 export function joinRoom(room: string, listener: RoomListener): () => void {
   let entry = rooms.get(room);
@@ -102,6 +112,7 @@ export function joinRoom(room: string, listener: RoomListener): () => void {
   } else {
     entry = { listeners: new Set([listener]), state: 'joining' };
     rooms.set(room, entry);
+    clearTimeout(lingering);
     if (socket === null) open();
     else tell({ type: 'join', room });
   }
@@ -113,10 +124,7 @@ export function joinRoom(room: string, listener: RoomListener): () => void {
     tell({ type: 'leave', room });
     if (rooms.size > 0) return;
     clearTimeout(retry);
-    const leaving = socket;
-    socket = null;
-    clearInterval(beat);
-    leaving?.close();
+    lingering = setTimeout(hangUp, LINGER_MS);
   };
 }
 

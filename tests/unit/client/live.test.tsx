@@ -47,6 +47,8 @@ beforeEach(() => {
   vi.stubGlobal('WebSocket', Line);
 });
 afterEach(() => {
+  // The line lingers a moment after the last room; the next test begins without it.
+  vi.advanceTimersByTime(2_000);
   vi.useRealTimers();
   vi.unstubAllGlobals();
 });
@@ -62,6 +64,14 @@ test('all rooms of a page share one line, which closes after the last one left',
   leave[1]?.();
   expect(line(0).said.at(-1)).toEqual({ type: 'leave', room });
   leave[2]?.();
+  expect(line(0).said.at(-1)).toEqual({ type: 'leave', room: other });
+  // A page that is turned joins the next room on the same line.
+  vi.advanceTimersByTime(500);
+  const leaveNext = joinRoom(room, {});
+  vi.advanceTimersByTime(60_000 - 59_000);
+  expect(Line.all).toHaveLength(1);
+  leaveNext();
+  vi.advanceTimersByTime(2_000);
   expect(line(0).readyState).toBe(3);
 });
 

@@ -38,8 +38,8 @@ export function ArmTrial({ trial, rigId }: { trial: TrialSummary; rigId: RigId }
   }
   return (
     <div>
-      <fieldset className="border-t border-rule">
-        <legend className="text-small font-semibold pb-1">Device</legend>
+      <p id="device-choice" className="text-small font-semibold pb-1">Device</p>
+      <div role="radiogroup" aria-labelledby="device-choice" className="border-t border-rule">
         {offered.map((device) => (
           <label key={device.id} className="flex items-baseline gap-x-3 border-b border-rule py-2">
             <input type="radio" name="device" className="size-4.5 self-center accent-ink" checked={device.id === ready?.id} disabled={device.state !== 'connected'} onChange={() => setChosen(device.id)} />
@@ -47,7 +47,7 @@ export function ArmTrial({ trial, rigId }: { trial: TrialSummary; rigId: RigId }
             <span className="ml-auto text-small text-soft">{WORDS[device.state]}</span>
           </label>
         ))}
-      </fieldset>
+      </div>
       {ready ? null : <p role="status" className="mt-2 text-small text-soft">{offered.some((device) => device.state === 'recording') ? 'The device is recording another trial: wait until it ends, or stop it.' : 'Switch the device on; it appears here once its link is up.'}</p>}
       <ProblemNote className="mt-3" error={arm.error} />
       <Actions>

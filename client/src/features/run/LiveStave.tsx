@@ -9,7 +9,7 @@ import type { LiveFlag, LivePlayer } from './live-trial';
 const useStaveHeight = () => {
   const narrow = useWindowWidth() < 640;
   const height = useWindowHeight();
-  return narrow ? 280 : Math.min(420, Math.max(280, height * 0.42));
+  return narrow ? 250 : Math.min(420, Math.max(280, height * 0.42));
 };
 
 interface LiveStaveProps {

@@ -135,7 +135,7 @@ function SpreadFrame({ title, scene, desk, stave }: { title: string; scene: Reac
   return (
     <div className="flex flex-col md:h-[calc(100dvh-3.3125rem)] md:min-h-[44rem]">
       <title>{`${title} · Tautbook`}</title>
-      <div className="md:flex-1 md:min-h-0 md:grid md:grid-cols-[minmax(0,58fr)_minmax(0,42fr)]">
+      <div className="flex flex-col md:flex-1 md:min-h-0 md:grid md:grid-cols-[minmax(0,58fr)_minmax(0,42fr)]">
         <section aria-label="Scene" className="relative bg-sheet h-[19rem] md:h-auto min-h-0 overflow-hidden max-md:order-2">{scene}</section>
         <section aria-label="Desk" className="margin-rule min-h-0 md:overflow-y-auto px-6 max-sm:px-5 pt-3 pb-6">
           <div className="[&_h1]:text-lead [&_h1]:tracking-normal"><PageTitle>{title}</PageTitle></div>
@@ -145,7 +145,7 @@ function SpreadFrame({ title, scene, desk, stave }: { title: string; scene: Reac
           </p>
         </section>
       </div>
-      <section aria-label="Stave" className="bg-paper border-t border-rule-strong">{stave}</section>
+      <section aria-label="Stave" className="sticky bottom-0 z-10 bg-paper border-t border-rule-strong">{stave}</section>
     </div>
   );
 }

@@ -6,7 +6,7 @@ import { Button } from '../../ui/Button';
 import { Actions } from '../../ui/Dialog';
 import { ProblemNote } from '../../ui/ProblemNote';
 import { StateWord } from '../../ui/StateWord';
-import { flagDetail, flagHead } from '../trial';
+import { flagDetail, flagHead, flagTone } from '../trial';
 import type { LiveFlag, LivePlayer, Mark } from './live-trial';
 import { useStop } from './queries';
 import { useFocusOnce } from './use-focus-once';
@@ -48,7 +48,7 @@ export function RunningTrial({ trial, flags, marks, player }: RunningTrialProps)
           {moments.slice(0, SHOWN).map(({ key, atS, flag, mark }) => (
             <li key={key} className="grid grid-cols-[3.5rem_1fr_auto] gap-x-3 border-b border-rule py-1.5">
               <span className="text-small text-soft pt-0.5">{clockText(atS, 1)}</span>
-              {flag ? <span><FlagMark kind={flag.kind} className="inline-block mr-2 align-[-2px]" /><b>{flagHead(flag)}</b> <span className="text-soft">{flag.open ? '' : flagDetail(flag)}</span></span> : <span>{mark.label}</span>}
+              {flag ? <span><FlagMark kind={flag.kind} className="inline-block mr-2 align-[-2px]" /><b className={flagTone[flag.kind]}>{flagHead(flag)}</b> <span className="text-soft">{flag.open ? '' : flagDetail(flag)}</span></span> : <span>{mark.label}</span>}
               <span className="text-small text-soft">{flag ? (flag.open ? 'now' : '') : 'mark'}</span>
             </li>
           ))}

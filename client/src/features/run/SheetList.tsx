@@ -33,7 +33,7 @@ export function SheetList({ session, current, onTurnTo }: SheetListProps) {
                 {waits && !here && !busy ? (
                   <button type="button" onClick={() => onTurnTo(trial.id)} className="text-left underline decoration-rule-field decoration-1 underline-offset-4 hover:decoration-ink">{trial.task.title}</button>
                 ) : trial.state === 'judged' ? <Link to={`/trials/${trial.id}`} className="underline decoration-rule-field decoration-1 underline-offset-4 hover:decoration-ink">{trial.task.title}</Link> : <span className={classNames(here && 'font-semibold')}>{trial.task.title}</span>}
-                <span className="text-small text-soft"> {conditionName(trial.condition)}{trial.durationS === null ? '' : `, ${duration(trial.durationS)}`}</span>
+                <span className="text-small text-soft"> {conditionName(trial.condition)}{trial.durationS === null || isUnderWay(trial) ? '' : `, ${duration(trial.durationS)}`}</span>
               </span>
               <TrialStateWord trial={trial} />
             </li>

@@ -24,6 +24,9 @@ export interface LivePlayer extends Player {
   readonly source: LiveSource;
 }
 
+/** One window of the server holds so many samples at most. */
+const MOST_SAMPLES = 8192;
+
 /** Null when the recording's channels do not fit the rig. */
 export function useLivePlayer(recording: RecordingMeta, cableCount: number): LivePlayer | null {
   const { id, rateHz } = recording;
@@ -53,28 +56,30 @@ export function useLivePlayer(recording: RecordingMeta, cableCount: number): Liv
     if (!player) return;
     const { source } = player;
     const controller = new AbortController();
-    const fetchBefore = (toS: number) => {
-      const span = { fromS: Math.max(0, toS - LIVE_PAGE_S), toS };
-      loadWindow(id, channelCount)(span, Math.round(LIVE_PAGE_S * source.rateHz), controller.signal).then(
-        (stretch) => source.putBefore(stretch),
-        // What came before is only missing from the moving page; the recording has it.
-        () => undefined,
-      );
+    const load = loadWindow(id, channelCount);
+    // Samples, not averages, and the newer half first: so many go into one window.
+    const stepS = Math.min(LIVE_PAGE_S / 2, MOST_SAMPLES / rateHz);
+    const fetchBefore = async (toS: number) => {
+      for (let endS = toS; endS > Math.max(0, toS - LIVE_PAGE_S); endS -= stepS) {
+        source.putBefore(await load({ fromS: Math.max(0, endS - stepS), toS: endS }, MOST_SAMPLES, controller.signal));
+      }
     };
-    if (openedAtS > 0) fetchBefore(openedAtS + 1);
+    // What came before is only missing from the moving page when this fails; the recording has it.
+    const tryBefore = (toS: number) => void fetchBefore(toS).catch(() => undefined);
+    if (openedAtS > 0) tryBefore(openedAtS + 1);
     // The room was joined a moment after the first sample: those in between are in the book by the time a second has come.
     let firstS: number | null = null;
     const stop = source.onChange(() => {
       firstS ??= source.newestS;
       if (source.newestS < firstS + 1) return;
       stop();
-      if (firstS > 0) fetchBefore(firstS + 0.5);
+      if (firstS > 0) tryBefore(firstS + 0.5);
     });
     return () => {
       stop();
       controller.abort();
     };
-  }, [player, id, channelCount, openedAtS]);
+  }, [player, id, channelCount, rateHz, openedAtS]);
   return player;
 }
 

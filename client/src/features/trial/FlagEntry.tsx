@@ -2,7 +2,7 @@ import type { Flag } from '@shared/api/sessions';
 import { clock } from '../../lib/format';
 import { FlagMark } from '../../replay/FlagMark';
 import { classNames } from '../../ui/class-names';
-import { flagDetail, flagHead } from './flag-words';
+import { flagDetail, flagHead, flagTone } from './flag-words';
 import { MarginEntry } from './MarginEntry';
 
 interface FlagEntryProps {
@@ -12,8 +12,6 @@ interface FlagEntryProps {
   readonly onLight: (on: boolean) => void;
   readonly onNote: (() => void) | null;
 }
-
-const tones: Partial<Record<Flag['kind'], string>> = { slack: 'text-slack-text', saturation: 'text-saturated-text', 'near-limit': 'text-near-text' };
 
 /** A flag in the margin: what the rules found, and where. */
 export function FlagEntry({ flag, here, onGo, onLight, onNote }: FlagEntryProps) {
@@ -28,7 +26,7 @@ export function FlagEntry({ flag, here, onGo, onLight, onNote }: FlagEntryProps)
     >
       <p>
         <FlagMark kind={flag.kind} className="inline-block mr-2 align-[-2px]" />
-        <b className={classNames(tones[flag.kind])}>{flagHead(flag)}</b> <span className="text-soft">{flagDetail(flag)}</span>
+        <b className={classNames(flagTone[flag.kind])}>{flagHead(flag)}</b> <span className="text-soft">{flagDetail(flag)}</span>
       </p>
     </MarginEntry>
   );

@@ -3,6 +3,9 @@ import type { Flag } from '@shared/api/sessions';
 import { duration, millimetres, newtons } from '../../lib/format';
 import { FLAG_WORDS } from '../../lib/words';
 
+/** Text colour of a kind that has one of its own. */
+export const flagTone: Partial<Record<Flag['kind'], string>> = { slack: 'text-slack-text', saturation: 'text-saturated-text', 'near-limit': 'text-near-text' };
+
 /** "Slack, cable 4". */
 export const flagHead = (flag: Pick<Flag, 'kind' | 'cable'>): string => (flag.cable === null ? FLAG_WORDS[flag.kind] : `${FLAG_WORDS[flag.kind]}, cable ${flag.cable}`);
 

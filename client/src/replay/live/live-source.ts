@@ -22,7 +22,7 @@ export interface LiveSource extends Source {
   readonly newestS: number;
   /** What came over the socket; samples at or before the newest are left out. @param values channel after channel */
   take(timesS: Float64Array, values: Float32Array): void;
-  /** Older samples or averages, read from the book after the page was opened in the middle of a trial. */
+  /** Older samples, read from the book after the page was opened in the middle of a trial. */
   putBefore(stretch: Stretch): void;
 }
 

@@ -1,7 +1,7 @@
 /** Moves the camera between its stands and lets the reader turn the scene by hand. */
 import { useThree } from '@react-three/fiber';
 import { useEffect, useEffectEvent, useRef } from 'react';
-import { Vector3 } from 'three';
+import { Fog, Vector3 } from 'three';
 import { OrbitControls } from 'three/addons/controls/OrbitControls.js';
 import { handStand, standOf, type CameraName } from './cameras';
 import type { RigStage } from './rig-stage';
@@ -17,8 +17,15 @@ export interface CameraRigProps {
 
 const MOVE_MS = 320;
 
+/** What is behind the middle of the frame pales a little, from wherever one looks. */
+function setFog(fog: unknown, distance: number, radius: number): void {
+  if (!(fog instanceof Fog)) return;
+  fog.near = Math.max(0.01, distance - radius * 0.9);
+  fog.far = distance + radius * 2.4;
+}
+
 export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProps) {
-  const { camera, gl, invalidate, size } = useThree();
+  const { camera, gl, invalidate, size, scene } = useThree();
   const controls = useRef<OrbitControls | null>(null);
   const began = useEffectEvent(() => {
     if (name !== 'free') onFree();
@@ -37,7 +44,10 @@ export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProp
     made.target.copy(stage.centre);
     // One finger up and down scrolls the page; sideways it turns the scene.
     gl.domElement.style.touchAction = 'pan-y';
-    const change = () => invalidate();
+    const change = () => {
+      setFog(scene.fog, camera.position.distanceTo(stage.centre), stage.radius);
+      invalidate();
+    };
     const start = () => {
       turnedByHand.current = true;
       began();
@@ -49,7 +59,7 @@ export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProp
       made.dispose();
       controls.current = null;
     };
-  }, [camera, gl, invalidate, stage]);
+  }, [camera, gl, invalidate, scene, stage]);
 
   useEffect(() => {
     const orbit = controls.current;

@@ -16,7 +16,7 @@ export const FIELD_OF_VIEW = 27;
 
 /** Room round the frame for the exits' numbers, m, and the share of the picture's height and width that words leave free. */
 const NUMBERS_M = 0.055;
-const FREE = { across: 0.96, up: 0.86 };
+const FREE = { across: 0.96, up: 0.93 };
 
 /**
  * As near as the whole frame stays in the picture.

@@ -175,7 +175,8 @@ export function makeRigStage(file: RigFile): RigStage {
       const paper = new Color(palette.sheet);
       scene.background = paper;
       // What is far takes on the paper: the frame's back steps back.
-      scene.fog = new Fog(paper, radius * 2.6, radius * 6.2);
+      const before = scene.fog instanceof Fog ? scene.fog : null;
+      scene.fog = new Fog(paper, before?.near ?? radius * 3, before?.far ?? radius * 7);
       cableMaterials.taut.color.set(palette.string);
       cableMaterials.near.color.set(palette.near);
       cableMaterials.saturated.color.set(palette.saturated);
