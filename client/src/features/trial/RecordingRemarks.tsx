@@ -35,7 +35,7 @@ export function RecordingRemarks({ trial, recording, source, complaint, gaps }: 
     recording.samples < 20 ? <>Only {counted(recording.samples, 'sample')} {recording.samples === 1 ? 'was' : 'were'} recorded.</> : null,
     noCables ? <>No cable was measured in this recording; pose and grasp are shown as far as they were.</> : null,
     gaps > 0 ? <>{counted(gaps, 'gap')}: {count(recording.gaps.reduce((sum, gap) => sum + gap.missing, 0))} samples are missing and hatched.</> : null,
-    trial.outcome !== null && trial.outcome !== 'completed' ? <>Outcome: <b>{trial.outcome}</b>{trial.outcomeReason ? `, ${trial.outcomeReason}` : ''}.</> : null,
+    trial.outcome !== null && trial.outcome !== 'completed' ? <>Outcome: <b>{trial.outcome}</b>{trial.outcomeReason ? `, ${trial.outcomeReason.replace(/[.!?]$/, '')}` : ''}.</> : null,
   ].filter((remark) => remark !== null);
   return (
     <div className="px-6 max-sm:px-5 text-small text-soft">
