@@ -11,7 +11,7 @@ export type Outcome = z.infer<typeof outcome>;
 
 /**
  * planned -> armed -> recording -> stopped -> judged. `stopped` is recorded and waits for its outcome;
- * `away` is recording while the device's link is down.
+ * `away` is recording whose device has lost the link and not gone on with it yet.
  */
 export const trialState = z.enum(['planned', 'armed', 'recording', 'away', 'stopped', 'judged']);
 export type TrialState = z.infer<typeof trialState>;

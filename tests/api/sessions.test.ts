@@ -123,11 +123,14 @@ describe('a trial', () => {
     await device.leave();
     await away;
     expect(codeOf(await operator.post(`${trialPath(1)}/stop`))).toEqual([409, 'DEVICE_AWAY']);
-    const back = becomes(1, 'recording');
     const again = await BenchDevice.connect(app.url, lab.deviceKey);
+    // Connected alone says nothing of the run: the device may have forgotten it.
+    expect(await stateOf(1)).toBe('away');
+    const back = becomes(1, 'recording');
+    await again.goOn('run-2', 100);
     await back;
     const stopped = becomes(1, 'stopped');
-    await again.end('run-2', 100);
+    await again.end('run-2', 200, 'done', 2);
     await stopped;
     await again.leave();
     expect((await operator.put(`${trialPath(1)}/outcome`, { outcome: 'aborted', reason: 'hand slipped' })).status).toBe(200);

@@ -53,8 +53,14 @@ export class BenchDevice {
     while ((await this.hear('ack')).next < 1);
   }
 
-  async end(run: string, samples: number, reason: 'done' | 'stopped' = 'done'): Promise<void> {
-    this.send({ type: 'end', run, batches: 1, samples, reason });
+  /** Goes on with a run after `begin`, also over another connection: one more batch of `samples`, until it is durable. */
+  async goOn(run: string, samples: number): Promise<void> {
+    this.send(batchOf(run, samples, 1));
+    while ((await this.hear('ack')).next < 2);
+  }
+
+  async end(run: string, samples: number, reason: 'done' | 'stopped' = 'done', batches = 1): Promise<void> {
+    this.send({ type: 'end', run, batches, samples, reason });
     while (!(await this.hear('ack')).ended);
   }
 
@@ -66,9 +72,10 @@ export class BenchDevice {
 }
 
 /** A hand that does not move, every cable at 5 N, lengths not measured: nothing to flag. */
-function batchOf(run: string, count: number): Batch {
+function batchOf(run: string, count: number, n = 0): Batch {
   const values = new Float32Array(benchChannels.length * count);
   const rest: Record<string, number> = { z_m: 0.28, qw: 1, grasp: 0.02 };
   benchChannels.forEach((channel, c) => values.fill(rest[channel] ?? (channel.endsWith('_N') ? 5 : channel.startsWith('l') ? Number.NaN : 0), c * count, (c + 1) * count));
-  return { type: 'batch', run, n: 0, first: 0, count, t0Us: 0, data: new Uint8Array(values.buffer) };
+  const first = n * count;
+  return { type: 'batch', run, n, first, count, t0Us: (first / benchRateHz) * 1e6, data: new Uint8Array(values.buffer) };
 }
