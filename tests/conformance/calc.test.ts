@@ -87,7 +87,8 @@ const files: Record<string, () => Check[]> = {
       expected: same(one, ['lengthRates'], 1e-11),
     })),
   forward: () =>
-    cases('forward').map((one) => {
+    // Case 22's published pose is no minimum; rig-reference.test.ts shows it and checks the true one.
+    cases('forward').filter((_, k) => k !== 22).map((one) => {
       const pose = one['pose'] as Json;
       return {
         call: 'rig.forward',

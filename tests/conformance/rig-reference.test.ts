@@ -82,10 +82,17 @@ describe('statics.json', () => {
 
 type Forward = { rig: string; lengths: number[]; start: Pose; pose: Pose; residualRms: number };
 
+/**
+ * Its published pose is a Gauss-Newton step that never settled (plain Gauss-Newton circles there for ever), with a
+ * higher residual than the minimum beside it.
+ */
+const FORWARD_CASE_THAT_IS_NO_MINIMUM = 22;
+
 describe('forward.json', () => {
   const file = reference<{ tolerance: Record<'p' | 'q' | 'grasp' | 'residualRms', number>; cases: Forward[] }>('forward');
+  const sound = file.cases.flatMap((one, k) => (k === FORWARD_CASE_THAT_IS_NO_MINIMUM ? [] : [[k, one.rig, one] as const]));
 
-  it.each(file.cases.map((one, k) => [k, one.rig, one] as const))('case %i (%s): lengths to pose', (_, name, one) => {
+  it.each(sound)('case %i (%s): lengths to pose', (_, name, one) => {
     const found = forwardKinematics(rigNamed(name), one.lengths, one.start);
     expect(found.converged).toBe(true);
     expect(largestDifference(found.pose.p, one.pose.p)).toBeLessThanOrEqual(file.tolerance.p);
@@ -93,7 +100,32 @@ describe('forward.json', () => {
     expect(Math.abs(found.pose.grasp - one.pose.grasp)).toBeLessThanOrEqual(file.tolerance.grasp);
     expect(Math.abs(found.residualRms - one.residualRms)).toBeLessThanOrEqual(file.tolerance.residualRms);
   });
+
+  it('all poses but that of case 22 are where least squares ends: the residual has no slope there', () => {
+    const slopes = file.cases.map((one) => residualSlope(rigNamed(one.rig), one.pose, one.lengths));
+    expect(slopes.flatMap((slope, k) => (slope > 1e-12 ? [k] : []))).toEqual([FORWARD_CASE_THAT_IS_NO_MINIMUM]);
+  });
+
+  it('case 22 ends lower than the file says, where the residual has no slope', () => {
+    const one = file.cases[FORWARD_CASE_THAT_IS_NO_MINIMUM]!;
+    const rig = rigNamed(one.rig);
+    const found = forwardKinematics(rig, one.lengths, one.start);
+    expect(found.converged).toBe(true);
+    expect(found.residualRms).toBeLessThan(one.residualRms - 8e-7);
+    expect(residualSlope(rig, found.pose, one.lengths)).toBeLessThan(1e-15);
+    // scipy 1.17.1 least_squares, trf and lm alike from the start of the case (differences for derivatives): 2.353995636e-4 m, grasp 0.60779670 rad
+    expect(found.residualRms).toBeCloseTo(2.353995636e-4, 12);
+    expect(found.pose.grasp).toBeCloseTo(0.6077967, 6);
+  });
 });
+
+/** Largest entry of A e, the slope of half the sum of squared length errors along a step. */
+function residualSlope(rig: RigModel, pose: Pose, lengths: readonly number[]): number {
+  const n = rig.cableCount;
+  const e = cableLengths(rig, pose, new Float64Array(n)).map((length, i) => length - lengths[i]!);
+  const A = structureMatrix(rig, pose, new Float64Array(7 * n));
+  return Math.max(...Array.from({ length: 7 }, (_, row) => Math.abs(e.reduce((sum, value, i) => sum + A[row * n + i]! * value, 0))));
+}
 
 type Velocity = { rig: string; pose: Pose; twist: number[]; lengthRates: number[]; tensions: number[]; powerFromCables: number };
 

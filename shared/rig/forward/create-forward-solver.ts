@@ -1,4 +1,5 @@
 import type { RigModel } from '../rig-model';
+import { addLengthCurvature } from './add-length-curvature';
 import { lengthEquations } from './length-equations';
 import { solveCholesky7 } from './solve-cholesky7';
 
@@ -26,26 +27,30 @@ export type ForwardSolver = {
 /** m and rad: a step below this ends the iteration. A small change of length does not: a pose can slide far on little. */
 const STEP_TOLERANCE = 1e-12;
 const ITERATIONS = 200;
+/** Gauss-Newton has mostly ended by then; where it has not, its steps circle, and Newton's own steps follow. */
+const GAUSS_NEWTON_STEPS = 8;
 /** First damping after a step that made things worse, and the factors between tries. No unit. */
 const FIRST_DAMPING = 1e-4;
 const MORE_DAMPING = 10;
 const LESS_DAMPING = 0.1;
 const MOST_DAMPING = 1e8;
-/** m^2: sums of squares closer than this are equal to rounding (lengths near 1 m hold 1e-16 each). */
-const ROUNDING = 1e-29;
+/** Share of a length that rounding may take from it: a double's last digits, after a few operations. No unit. */
+const ROUNDING = 4e-16;
 
 /**
  * Solver for one rig: least squares of the cable lengths by Gauss-Newton steps, damped only after a step that made the
- * residual worse.
+ * residual worse, and by Newton steps when the first eight have not settled it.
  *
- * @source Gauss-Newton on cable lengths (e.g. Pott 2010); damping of Levenberg 1944 and Marquardt 1963
+ * @source Gauss-Newton on cable lengths (e.g. Pott 2010); damping of Levenberg 1944 and Marquardt 1963; Newton's term
+ *         in `addLengthCurvature`
  */
 export function createForwardSolver(rig: RigModel): ForwardSolver {
   const equations = { M: new Float64Array(28), h: new Float64Array(7) };
+  const { M, h: step } = equations;
   const here = new Float64Array(8);
   const before = new Float64Array(8);
-  const step = equations.h;
-  const probe = new Float64Array(7);
+  // m: what rounding makes of the root of the sum of squares; sums closer than that are equal.
+  const noise = ROUNDING * Math.sqrt(rig.cableCount) * Math.max(...rig.exits.map(Math.abs));
   let status: ForwardStatus = 'missing';
   let residualRms = Number.NaN;
   let iterations = 0;
@@ -54,6 +59,12 @@ export function createForwardSolver(rig: RigModel): ForwardSolver {
     status = how;
     residualRms = how === 'missing' ? Number.NaN : Math.sqrt(sum / rig.cableCount);
     return how === 'solved';
+  }
+
+  /** True when the lengths leave some motion from `here` free. */
+  function isFlat(lengths: ArrayLike<number>, offset: number): boolean {
+    lengthEquations(rig, here, lengths, offset, equations);
+    return solveCholesky7(M, step, 0, 0) === 0;
   }
 
   return {
@@ -74,31 +85,35 @@ export function createForwardSolver(rig: RigModel): ForwardSolver {
       let sum = lengthEquations(rig, here, lengths, offset, equations);
       if (!(sum < Infinity)) return end('missing', sum);
       for (;;) {
-        const floor = 1e-3 * Math.max(equations.M[0]!, equations.M[2]!, equations.M[5]!);
-        const pivot = solveCholesky7(equations.M, step, damping, floor);
-        if (pivot === 0) {
-          damping = Math.max(FIRST_DAMPING, damping * MORE_DAMPING);
+        let pivot = 0;
+        if (iterations >= GAUSS_NEWTON_STEPS) {
+          addLengthCurvature(rig, here, lengths, offset, M);
+          pivot = solveCholesky7(M, step, 0, 0);
+          // Not a valley here: the way down is Gauss-Newton's.
+          if (pivot === 0) lengthEquations(rig, here, lengths, offset, equations);
+        }
+        while (pivot === 0) {
+          pivot = solveCholesky7(M, step, damping, floorOf(M));
+          if (pivot === 0) damping = Math.max(FIRST_DAMPING, damping * MORE_DAMPING);
           if (damping > MOST_DAMPING) return end('singular', sum);
-          continue;
         }
         copy(here, before);
         const size = move(here, step);
         iterations++;
         // Near a singular pose rounding alone makes steps of this size.
-        const tolerance = Math.max(STEP_TOLERANCE, 4e-16 / pivot);
-        if (size <= tolerance) {
-          if (damping > 0 && solveCholesky7(equations.M, probe.fill(0), 0, 0) === 0) return end('singular', sum);
+        if (size <= Math.max(STEP_TOLERANCE, 4e-16 / pivot)) {
+          if (damping > 0 && isFlat(lengths, offset)) return end('singular', sum);
           copy(here, pose);
           return end('solved', sum);
         }
         if (iterations >= ITERATIONS) return end('unsettled', sum);
         let next = lengthEquations(rig, here, lengths, offset, equations);
-        while (!(next <= sum * (1 + 1e-12) + ROUNDING)) {
+        while (!(next <= sum + noise * (2 * Math.sqrt(sum) + noise))) {
           damping = Math.max(FIRST_DAMPING, damping * MORE_DAMPING);
           if (damping > MOST_DAMPING || iterations >= ITERATIONS) return end('unsettled', sum);
           copy(before, here);
           lengthEquations(rig, here, lengths, offset, equations);
-          if (solveCholesky7(equations.M, step, damping, floor) > 0) move(here, step);
+          if (solveCholesky7(M, step, damping, floorOf(M)) > 0) move(here, step);
           iterations++;
           next = lengthEquations(rig, here, lengths, offset, equations);
         }
@@ -107,6 +122,11 @@ export function createForwardSolver(rig: RigModel): ForwardSolver {
       }
     },
   };
+}
+
+/** What damping adds to every diagonal entry, so that a motion without any stiffness is damped too. */
+function floorOf(M: Float64Array): number {
+  return 1e-3 * Math.max(M[0]!, M[2]!, M[5]!);
 }
 
 function copy(from: Float64Array, to: Float64Array): void {
