@@ -37,3 +37,22 @@ export { eulerZyxFromQuat, quatFromEulerZyx } from './rotation/euler-zyx';
 export { slerp } from './rotation/slerp';
 export { meanRotation } from './rotation/mean-rotation';
 export { geodesicAngle } from './rotation/geodesic-angle';
+
+export { registerPoints, type PointRegistration } from './calibration/register-points';
+export { registerOrientations, type OrientationRegistration } from './calibration/register-orientations';
+export { timeOffset, type TimeOffset } from './calibration/time-offset';
+export {
+  DEFAULT_TRACKING_TOLERANCES,
+  trackingError,
+  withinTolerances,
+  type ErrorSummary,
+  type TrackedPoses,
+  type TrackingError,
+  type TrackingTolerances,
+} from './calibration/tracking-error';
+export {
+  orientationRepeatability,
+  positionRepeatability,
+  type OrientationRepeatability,
+  type PositionRepeatability,
+} from './calibration/pose-repeatability';

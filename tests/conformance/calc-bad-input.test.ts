@@ -3,6 +3,8 @@ import { beforeAll, describe, expect, it } from 'vitest';
 import { calc, runCalc, type CalcAnswer } from './run-calc';
 
 const zeros = (n: number): number[] => new Array<number>(n).fill(0);
+const line: [number, number, number][] = [0, 1, 2, 5].map((k) => [0.1 + 0.03 * k, 0.2 - 0.07 * k, 0.01 * k]);
+const octahedron: [number, number, number][] = [[1, 0, 0], [-1, 0, 0], [0, 1, 0], [0, -1, 0], [0, 0, 1], [0, 0, -1]];
 const workload = { mental: 1, physical: 2, temporal: 3, performance: 4, effort: 5, frustration: 6 };
 
 const refused: readonly (readonly [what: string, code: string, request: Record<string, unknown>])[] = [
@@ -62,6 +64,23 @@ const refused: readonly (readonly [what: string, code: string, request: Record<s
   ['a quaternion of norm 2', 'BAD_REQUEST', { call: 'rotation.convert', q: [0, 0, 0, 2] }],
   ['a quaternion of norm 0', 'BAD_REQUEST', { call: 'rotation.angle', qa: [0, 0, 0, 0], qb: [0, 0, 0, 1] }],
   ['a quaternion of three', 'BAD_REQUEST', { call: 'rotation.slerp', qa: [0, 0, 0], qb: [0, 0, 0, 1], s: [0] }],
+  ['one point', 'TOO_SHORT', { call: 'register.points', from: [[0, 0, 0]], to: [[1, 1, 1]], scaled: false }],
+  ['two points', 'TOO_SHORT', { call: 'register.points', from: [[0, 0, 0], [1, 0, 0]], to: [[1, 1, 1], [1, 2, 1]], scaled: true }],
+  ['points on a line', 'SINGULAR', { call: 'register.points', from: line, to: line.map(([x, y, z]) => [y, z, x]), scaled: false }],
+  ['points in one place', 'SINGULAR', { call: 'register.points', from: line, to: line.map(() => [1, 2, 3]), scaled: true }],
+  ['a mirror image without a preference', 'SINGULAR', { call: 'register.points', from: octahedron, to: octahedron.map(([x, y, z]) => [-x, -y, -z]), scaled: false }],
+  ['points without partners', 'BAD_REQUEST', { call: 'register.points', from: line, to: line.slice(1), scaled: false }],
+  ['points in the plane', 'BAD_REQUEST', { call: 'register.points', from: [[0, 0]], to: [[0, 0]], scaled: false }],
+  ['no orientations', 'TOO_SHORT', { call: 'register.orientations', from: [], to: [] }],
+  ['an orientation of norm 3', 'BAD_REQUEST', { call: 'register.orientations', from: [[0, 0, 0, 3]], to: [[0, 0, 0, 1]] }],
+  ['orientations a half turn at odds', 'UNDEFINED', { call: 'register.orientations', from: [[0, 0, 0, 1], [0, 0, 0, 1]], to: [[0, 0, 0, 1], [1, 0, 0, 0]] }],
+  ['a lag longer than the signals', 'TOO_SHORT', { call: 'register.timeOffset', dt: 0.01, maxLag: 10, a: [1, 2, 3], b: [1, 2, 3] }],
+  ['signals that stand still', 'UNDEFINED', { call: 'register.timeOffset', dt: 0.01, maxLag: 2, a: zeros(20).fill(0.1), b: zeros(20).map((_, i) => Math.sin(i)) }],
+  ['a lag of half a sample', 'BAD_REQUEST', { call: 'register.timeOffset', dt: 0.01, maxLag: 0.5, a: zeros(9), b: zeros(9) }],
+  ['a period below zero', 'BAD_REQUEST', { call: 'register.timeOffset', dt: -1, maxLag: 1, a: zeros(9), b: zeros(9) }],
+  ['no poses to compare', 'TOO_SHORT', { call: 'error.pose', reference: [], measured: [], qReference: [], qMeasured: [] }],
+  ['orientations on one side only', 'BAD_REQUEST', { call: 'error.pose', reference: [[0, 0, 0]], measured: [[0, 0, 0]], qReference: [[0, 0, 0, 1]] }],
+  ['one approach', 'TOO_SHORT', { call: 'error.repeatability', command: [0, 0, 0], attained: [[0, 0, 1]] }],
   ['a rig that is none', 'BAD_RIG', { call: 'rig.structure', rig: {}, pose: { p: [0, 0, 0], q: [0, 0, 0, 1], grasp: 0 } }],
 ];
 
