@@ -56,3 +56,6 @@ export {
   type OrientationRepeatability,
   type PositionRepeatability,
 } from './calibration/pose-repeatability';
+
+export { graspsWithin, orientationsWithin } from './workspace/orientation-set';
+export { positionOf, workspace, type Workspace, type WorkspaceOptions, type WorkspaceProgress } from './workspace/workspace';
