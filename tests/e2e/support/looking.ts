@@ -1,0 +1,82 @@
+/** What can be seen of a page from outside: whether it has settled, whether it fits, what the keyboard reaches. */
+import type { Page } from 'playwright-core';
+
+/** The page shows what it has to show: its heading, no waiting lines, its faces, its scene where it has one. */
+export async function settled(page: Page): Promise<void> {
+  await page.locator('h1').first().waitFor();
+  await page.waitForFunction(async () => {
+    await document.fonts.ready;
+    const waiting = document.querySelector('.waiting-line, [role="progressbar"]');
+    const scene = document.querySelector('[data-testid="scene"]');
+    const words = document.querySelector('main')?.textContent ?? '';
+    return waiting === null && !words.includes('Setting up the scene') && (scene === null || scene.querySelector('canvas') !== null);
+  });
+  // What was asked for has been painted.
+  await page.evaluate(() => new Promise((resolve) => requestAnimationFrame(() => requestAnimationFrame(resolve))));
+}
+
+/** Elements that stick out to the right of a page that should not scroll sideways; empty when it does not. */
+export function overflowing(page: Page): Promise<string[]> {
+  return page.evaluate(() => {
+    const width = document.documentElement.clientWidth;
+    if (document.documentElement.scrollWidth <= width) return [];
+    const out = [...document.querySelectorAll('body *')].filter((element) => element.getBoundingClientRect().right > width + 0.5);
+    return out.map((element) => `${element.tagName.toLowerCase()} "${(element.textContent ?? '').slice(0, 40)}" ends at ${Math.round(element.getBoundingClientRect().right)} of ${width} px`);
+  });
+}
+
+/** Texts that are cut off by their own box. */
+export function cutOff(page: Page): Promise<string[]> {
+  return page.evaluate(() => [...document.querySelectorAll<HTMLElement>('main *, header *')]
+    .filter((element) => {
+      const style = getComputedStyle(element);
+      if (style.overflowX === 'visible' || style.position === 'absolute' || element.clientWidth <= 1) return false;
+      return element.scrollWidth > element.clientWidth + 1 && !/auto|scroll/.test(style.overflowX);
+    })
+    .map((element) => `${element.tagName.toLowerCase()} "${(element.textContent ?? '').slice(0, 60)}"`));
+}
+
+export interface KeyboardWalk {
+  /** Controls that Tab never came to. */
+  unreached: string[];
+  /** Controls that had the focus and did not show it. */
+  unseen: string[];
+  reached: number;
+}
+
+/** Walks from the top of the page through every control with the Tab key. */
+export async function walkByKeyboard(page: Page): Promise<KeyboardWalk> {
+  const controls = await page.evaluate(() => {
+    const all = [...document.querySelectorAll<HTMLElement>('a[href], button, input, select, textarea, [tabindex]')].filter((element) => {
+      // A list of tabs hands the focus on to the one that is open.
+      if (element.tabIndex < 0 || element.matches(':disabled, [type="hidden"], [role="tablist"]')) return false;
+      // Of a group of radio buttons the keyboard stops at one.
+      if (element instanceof HTMLInputElement && element.type === 'radio' && !element.checked) return false;
+      return element.checkVisibility({ checkVisibilityCSS: true });
+    });
+    all.forEach((element, index) => element.setAttribute('data-walk', String(index)));
+    (document.activeElement as HTMLElement | null)?.blur();
+    getSelection()?.removeAllRanges();
+    document.body.tabIndex = -1;
+    document.body.focus();
+    document.body.removeAttribute('tabindex');
+    return all.map((element) => `${element.tagName.toLowerCase()} "${(element.getAttribute('aria-label') ?? element.textContent ?? '').trim().slice(0, 50)}"`);
+  });
+  const reached = new Set<number>();
+  const unseen: string[] = [];
+  for (let presses = 0; presses < controls.length + 12 && reached.size < controls.length; presses += 1) {
+    await page.keyboard.press('Tab');
+    const at = await page.evaluate(() => {
+      const element = document.activeElement as HTMLElement | null;
+      if (element === null || element === document.body) return null;
+      const style = getComputedStyle(element);
+      const { width, height, top, bottom } = element.getBoundingClientRect();
+      const outlined = style.outlineStyle !== 'none' && parseFloat(style.outlineWidth) >= 1 && !/, 0\)$|transparent/.test(style.outlineColor);
+      return { index: Number(element.getAttribute('data-walk') ?? -1), seen: outlined && width > 1 && height > 1 && bottom > 0 && top < innerHeight };
+    });
+    if (at === null || at.index < 0) continue;
+    if (!reached.has(at.index) && !at.seen) unseen.push(controls[at.index] ?? '');
+    reached.add(at.index);
+  }
+  return { unreached: controls.filter((_, index) => !reached.has(index)), unseen, reached: reached.size };
+}
