@@ -2,7 +2,8 @@
 import { readFileSync } from 'node:fs';
 import express, { type Express, Router } from 'express';
 import type { Logger } from 'pino';
-import { type Gate, writeAudit } from './auth';
+import { describeApi as describe } from '@shared/api/description';
+import { type Gate, isOpen, writeAudit } from './auth';
 import type { Database } from './db/engine';
 import { deviceRoutes } from './features/devices';
 import { flagRoutes } from './features/flags';
@@ -12,8 +13,9 @@ import { peopleRoutes } from './features/people';
 import { recordingRoutes } from './features/recordings';
 import { rigRoutes } from './features/rigs';
 import { sessionRoutes } from './features/sessions';
+import { signInRoutes } from './features/sign-in';
 import { studyRoutes } from './features/studies';
-import { type ApiRouter, describeApi, jsonBody, problemHandler, raiseShield, type RateOptions, rates, sameOriginChanges, serveClient, unknownRoute } from './http';
+import { type ApiRouter, describeApi, jsonBody, problemHandler, raiseShield, type RateOptions, rates, sameOriginChanges, serve, serveClient, unknownRoute } from './http';
 import type { Services } from './services';
 
 export interface ApiOptions {
@@ -44,7 +46,7 @@ export const defaultRateLimits: RateLimits = {
 const version = (JSON.parse(readFileSync(new URL('../package.json', import.meta.url), 'utf8')) as { version: string }).version;
 
 export function createApi(options: ApiOptions): Express {
-  const { services, gate, log, rateLimits } = options;
+  const { gate, log, rateLimits } = options;
   const app = express();
   raiseShield(app, options);
 
@@ -52,12 +54,8 @@ export function createApi(options: ApiOptions): Express {
   app.use(['/api/auth/sign-in', '/api/auth/reset-password', '/api/auth/change-password', '/api/setup'], guessing);
   app.use('/api/auth/request-password-reset', rates(rateLimits.mail));
   app.use('/api', sameOriginChanges(options.publicUrl));
-  app.all('/api/auth/{*any}', services.desk.handler); // reads the body itself, so it stands before the parser
-
   app.use('/api', jsonBody());
   app.use(routes(options, gate));
-  const description = describeApi(version);
-  app.get('/api/openapi.json', (_req, res) => void res.json(description));
   app.use('/api', unknownRoute);
   serveClient(app, options.clientDirectory);
   app.use(problemHandler(log));
@@ -76,13 +74,16 @@ function routes({ db, services, checkResponses }: ApiOptions, gate: Gate): Route
     guard: (id, person, params) => gate.pass(id, person, params),
     audit: (line) => writeAudit(db, line),
   };
+  const description = describeApi(version, isOpen);
+  serve(router, describe, async () => description);
+  signInRoutes(router, services.desk);
   peopleRoutes(router, services.people);
   labRoutes(router, services.lab);
   rigRoutes(router, services.rigs);
   deviceRoutes(router, services.devices);
   studyRoutes(router, services.studies);
   sessionRoutes(router, services.sessions, services.sessionReader, gate);
-  recordingRoutes(router, services.recordings);
+  recordingRoutes(router, services.recordings, services.imports);
   flagRoutes(router, services.flags);
   noteRoutes(router, services.notes);
   return router.express;

@@ -66,6 +66,7 @@ export async function createTautbook(options: TautbookOptions): Promise<Tautbook
   const link = await createDeviceLink({ db, bus, book: createTrialBook(db, bus), log, ...(options.link ? { options: options.link } : {}) });
   const analysis = await createAnalysis({ db, bus, log });
   const services = await createServices({ db, bus, control: link, log, config, publicUrl: () => address.url, demo: options.demo });
+  await services.imports.sweep();
   const live = createLive({
     bus,
     onFault,
@@ -98,7 +99,7 @@ export async function createTautbook(options: TautbookOptions): Promise<Tautbook
       await link.close();
       await analysis.close();
       await closeServer(server);
-      services.post.close();
+      await services.post.close();
     },
   };
 }

@@ -8,7 +8,7 @@ import { createFlagService, type FlagService } from './features/flags';
 import { createLabService, type LabService } from './features/lab';
 import { createNoteService, type NoteService } from './features/notes';
 import { createPeopleService, type DemoSignIn, type PeopleService } from './features/people';
-import { createRecordingService, type RecordingService } from './features/recordings';
+import { createImportService, createRecordingService, type ImportService, type RecordingService } from './features/recordings';
 import { createRigService, type RigService } from './features/rigs';
 import { createSessionReader, createSessionService, type SessionReader, type SessionService } from './features/sessions';
 import { createStudyService, type StudyService } from './features/studies';
@@ -27,6 +27,7 @@ export interface Services {
   sessions: SessionService;
   sessionReader: SessionReader;
   recordings: RecordingService;
+  imports: ImportService;
   notes: NoteService;
   flags: FlagService;
 }
@@ -55,6 +56,7 @@ export const noDevices: DeviceControl = {
 
 export async function createServices({ db, bus, control, log, config, publicUrl, demo, now = () => new Date() }: ServiceOptions): Promise<Services> {
   const post = createPost(db, config, log);
+  const sessions = createSessionService({ db, bus, control, now });
   const desk = await createSignIn({ db, post, log, authSecret: config.authSecret, publicUrl });
   return {
     desk,
@@ -64,9 +66,10 @@ export async function createServices({ db, bus, control, log, config, publicUrl,
     rigs: createRigService(db),
     devices: createDeviceService(db, control),
     studies: createStudyService(db),
-    sessions: createSessionService({ db, bus, control, now }),
+    sessions,
     sessionReader: createSessionReader(db, now),
     recordings: createRecordingService(db),
+    imports: createImportService({ db, sessions, now }),
     notes: createNoteService(db, bus, now),
     flags: createFlagService(db),
   };

@@ -28,6 +28,17 @@ const onRecording = inStudy('recordingId');
 const onNote = inStudy('noteId');
 
 export const guards: Record<RouteId, Guard> = {
+  'api.describe': anyone,
+  'auth.signIn': anyone,
+  'auth.signOut': anyone,
+  'auth.session': anyone,
+  'auth.sessions': signedIn,
+  'auth.endSession': signedIn,
+  'auth.endOtherSessions': signedIn,
+  'auth.changePassword': signedIn,
+  'auth.requestReset': anyone,
+  'auth.passwordReset': anyone,
+
   'entrance.get': anyone,
   'setup.make': anyone,
   'me.get': signedIn,
@@ -76,6 +87,7 @@ export const guards: Record<RouteId, Guard> = {
   'flags.list': onTrial('lead', 'operator', 'clinician', 'reader'),
   'recordings.window': onRecording('lead', 'operator', 'clinician', 'reader'),
   'recordings.csv': onTrial('lead'),
+  'recordings.import': onTrial('lead', 'operator'),
   'notes.list': onTrial('lead', 'operator', 'clinician', 'reader'),
   'notes.add': onTrial('lead', 'operator', 'clinician', 'reader'),
   'notes.reply': onNote('lead', 'operator', 'clinician', 'reader'),
@@ -83,6 +95,9 @@ export const guards: Record<RouteId, Guard> = {
   'notes.resolve': onNote('lead', 'operator', 'clinician', 'reader'),
   'notes.versions': onNote('lead', 'operator', 'clinician', 'reader'),
 };
+
+/** Routes that answer whoever asks. */
+export const isOpen = (id: RouteId): boolean => guards[id].kind === 'anyone';
 
 /**
  * Sessions of a study that a member sees. Clinicians see those that a released summary names; until one is released,

@@ -1,6 +1,6 @@
 /** The description of the API (OpenAPI 3.1), made from the contracts that the routes themselves run on. */
 import { z } from 'zod';
-import { allRoutes } from '@shared/api';
+import { allRoutes, type RouteId } from '@shared/api';
 import { problem } from '@shared/api/common';
 import type { RouteContract } from '@shared/api/contract';
 
@@ -29,20 +29,23 @@ function answerOf(contract: RouteContract): JsonObject {
   return { description: contract.summary, content: { 'application/json': { schema } } };
 }
 
-const operationOf = (contract: RouteContract): JsonObject => ({
+const operationOf = (contract: RouteContract, isOpen: boolean): JsonObject => ({
   operationId: contract.id,
   summary: contract.summary,
   tags: [contract.id.split('.')[0]],
+  ...(isOpen ? { security: [] } : {}),
   parameters: parametersOf(contract),
+  ...(contract.takes ? { requestBody: { required: true, content: Object.fromEntries(contract.takes.map((type) => [type, { schema: { type: 'string', format: 'binary' } }])) } } : {}),
   ...(contract.body ? { requestBody: { required: true, content: { 'application/json': { schema: schemaOf(contract.body, 'input') } } } } : {}),
   responses: { 200: answerOf(contract), default: { $ref: '#/components/responses/Problem' } },
 });
 
-export function describeApi(version: string): JsonObject {
+/** @param isOpen tells the routes that answer whoever asks */
+export function describeApi(version: string, isOpen: (id: RouteId) => boolean): JsonObject {
   const paths: Record<string, JsonObject> = {};
   for (const contract of allRoutes) {
     const path = pathOf(contract.path);
-    paths[path] = { ...paths[path], [contract.method.toLowerCase()]: operationOf(contract) };
+    paths[path] = { ...paths[path], [contract.method.toLowerCase()]: operationOf(contract, isOpen(contract.id as RouteId)) };
   }
   return {
     openapi: '3.1.0',

@@ -1,5 +1,5 @@
 import { setImmediate as breathe } from 'node:timers/promises';
-import { and, asc, desc, eq, gt, gte, inArray, lte, sql } from 'drizzle-orm';
+import { and, asc, desc, eq, gt, gte, inArray, isNull, lt, lte, sql } from 'drizzle-orm';
 import type { RigFile } from '@shared/rig';
 import type { Database } from '../db/engine';
 import { devices, recordingChunks, recordingPyramid, recordings, recordingTail, rigRevisions, rigs, trials } from '../db/schema';
@@ -34,10 +34,10 @@ export async function touchDevice(db: Database, id: string, values: Partial<Pick
   await db.update(devices).set(values).where(eq(devices.id, id));
 }
 
-export async function insertRecording(db: Database, values: NewRecording): Promise<RecordingRow> {
+export async function insertRecording<D extends string | null>(db: Database, values: NewRecording & { deviceId: D }): Promise<RecordingRow & { deviceId: D }> {
   const [row] = await db.insert(recordings).values(values).returning();
   if (!row) throw new Error('The recording was not written');
-  return row;
+  return { ...row, deviceId: values.deviceId };
 }
 
 export async function findRun(db: Database, deviceId: string, run: string): Promise<RecordingRow | null> {
@@ -50,7 +50,23 @@ export async function findRecording(db: Database, id: string): Promise<Recording
   return row ?? null;
 }
 
-export const growingRuns = (db: Database, deviceId?: string): Promise<RecordingRow[]> =>
+export async function deleteRecording(db: Database, id: string): Promise<void> {
+  await db.delete(recordings).where(eq(recordings.id, id));
+}
+
+/** Imports that a stop of the server broke off: files whose rows never came to their end. */
+export async function dropUnfinishedFiles(db: Database, startedBeforeId: string): Promise<void> {
+  await db.delete(recordings).where(and(eq(recordings.state, 'growing'), isNull(recordings.deviceId), lt(recordings.id, startedBeforeId)));
+}
+
+/** A recording that a device makes or made. */
+export type RunRow = RecordingRow & { deviceId: string };
+
+const ofDevice = (row: RecordingRow): row is RunRow => row.deviceId !== null;
+
+export const growingRuns = async (db: Database, deviceId?: string): Promise<RunRow[]> => (await growingOf(db, deviceId)).filter(ofDevice);
+
+const growingOf = (db: Database, deviceId?: string): Promise<RecordingRow[]> =>
   db.select().from(recordings).where(and(eq(recordings.state, 'growing'), deviceId === undefined ? undefined : eq(recordings.deviceId, deviceId))).orderBy(asc(recordings.id));
 
 export const tailOf = (db: Database, recordingId: string) =>

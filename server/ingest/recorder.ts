@@ -15,7 +15,7 @@ import type { Database } from '../db/engine';
 import type { Bus } from '../live/bus';
 import { EndsTold } from './ends-told';
 import type { TrialBook } from './ports';
-import { closeRecording, commitRuns, growingRuns, type RecordingRow, rigOfRevision, sweepTail, tailOf } from './queries';
+import { closeRecording, commitRuns, growingRuns, rigOfRevision, type RunRow, sweepTail, tailOf } from './queries';
 import { asChunk, unpackTail } from './received-batch';
 import { Run, type RunLoad } from './run';
 import { foldFlags, tellFlags } from './run-flags';
@@ -78,7 +78,7 @@ export class Recorder {
   }
 
   /** Goes on with a recording from what is stored of it. */
-  private async adopt(row: RecordingRow): Promise<Run> {
+  private async adopt(row: RunRow): Promise<Run> {
     const { db, log } = this.parts;
     const run = await this.add(row);
     for await (const data of readEncodedChunks(db, row.id)) {
@@ -106,7 +106,7 @@ export class Recorder {
     return this.ofDevice(deviceId).filter((run) => run.ending === null);
   }
 
-  async add(row: RecordingRow): Promise<Run> {
+  async add(row: RunRow): Promise<Run> {
     const rig = rigModel(await rigOfRevision(this.parts.db, row.rigRevisionId));
     const run = new Run(row, this.parts.options);
     const channels = parseChannels(row.channels, rig.cableCount);

@@ -11,7 +11,7 @@ import type { LinkOptions, WallTime } from '@shared/link';
 import type { LiveFlag } from '../live/bus';
 import { takeBatch } from './batch-check';
 import { listGaps } from './gaps';
-import type { ChunkRow, Progress, PyramidRow, RecordingRow, TailRow } from './queries';
+import type { ChunkRow, Progress, PyramidRow, RecordingRow, RunRow, TailRow } from './queries';
 import { asChunk, joinBatches, packTail, type ReceivedBatch } from './received-batch';
 import { createSealer, type Finished, type Sealer } from './seal';
 
@@ -72,7 +72,7 @@ export class Run {
   /** Flagged for a chunk however few samples there are: the run has ended. */
   private finished: Finished | null = null;
 
-  constructor(row: RecordingRow, private readonly options: LinkOptions) {
+  constructor(row: RunRow, private readonly options: LinkOptions) {
     this.id = row.id as RecordingId;
     this.deviceId = row.deviceId as DeviceId;
     this.run = row.run;

@@ -2,7 +2,7 @@
 import { v7 } from 'uuid';
 import type { Chunk } from '@shared/recording';
 import type { Database } from '../db/engine';
-import { closeRecording, commitRuns, findRecording, insertRecording, type NewRecording, type RecordingRow, someChunks, tailOf } from './queries';
+import { closeRecording, commitRuns, deleteRecording, findRecording, insertRecording, type NewRecording, type RecordingRow, someChunks, tailOf } from './queries';
 import { asChunk, unpackTail } from './received-batch';
 import { createSealer } from './seal';
 import { unpackChunk } from './zlib-codec';
@@ -38,21 +38,42 @@ export async function* readChunks(db: Database, recordingId: string): AsyncGener
 }
 
 export type RecordingToFile = Pick<NewRecording, 'deviceId' | 'run' | 'rigRevisionId' | 'rateHz' | 'channels' | 'startedAt'>
-  & Partial<Pick<NewRecording, 'trialId' | 'firmware' | 'startUs' | 'startUncertaintyUs' | 'marks' | 'endReason'>>;
+  & Partial<Pick<NewRecording, 'trialId' | 'firmware' | 'startUs' | 'startUncertaintyUs' | 'marks' | 'endReason' | 'decimals'>>;
 
-/** Files a finished recording: chunks, pyramid, digest, gaps and statistics, closed at the end. */
-export async function writeRecording(db: Database, meta: RecordingToFile, chunks: AsyncIterable<Chunk> | Iterable<Chunk>): Promise<RecordingRow> {
-  const { endReason = 'done', startUs = 0, ...rest } = meta;
-  const recording = await insertRecording(db, { ...rest, id: v7(), startUs });
+export interface Filing {
+  /** Told after each durable chunk, how many samples are stored. */
+  onStored?(samples: number): void;
+  /** Stops between two chunks; what was stored is taken back. */
+  signal?: AbortSignal;
+}
+
+/**
+ * Files a finished recording: chunks, pyramid, digest, gaps and statistics, closed at the end. Chunk by chunk, so that the
+ * recorder's commits go on between them; when it breaks off, nothing of it stays.
+ */
+export async function writeRecording(db: Database, meta: RecordingToFile, chunks: AsyncIterable<Chunk> | Iterable<Chunk>, filing: Filing = {}): Promise<RecordingRow> {
+  const { endReason, startUs = 0, deviceId = null, ...rest } = meta;
+  const recording = await insertRecording(db, { ...rest, deviceId, id: v7(), startUs });
+  try {
+    return await writeChunks(db, recording, endReason ?? 'done', chunks, filing);
+  } catch (error) {
+    await deleteRecording(db, recording.id);
+    throw error;
+  }
+}
+
+async function writeChunks(db: Database, recording: RecordingRow, endReason: NonNullable<NewRecording['endReason']>, chunks: AsyncIterable<Chunk> | Iterable<Chunk>, { onStored, signal }: Filing): Promise<RecordingRow> {
   const sealer = createSealer(recording.id, recording.channels, recording.rateHz, GAPS_LISTED);
   let lastUs = 0;
   let samples = 0;
   for await (const chunk of chunks) {
+    signal?.throwIfAborted();
     if (chunk.count === 0) continue;
     const sealed = sealer.seal({ ...chunk, first: samples });
     samples += chunk.count;
     lastUs = chunk.timesUs[chunk.count - 1] ?? lastUs;
     await commitRuns(db, { progress: [], tail: [], chunks: [sealed.chunk], pyramid: sealed.pyramid, replaced: [] });
+    onStored?.(samples);
   }
   const { pyramid, values } = sealer.finish();
   await closeRecording(db, recording.id, 0, { ...values, nextSample: samples, lastUs, endReason, closedAt: new Date(recording.startedAt.getTime() + lastUs / 1000) }, pyramid);

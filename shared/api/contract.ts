@@ -26,6 +26,8 @@ export interface RouteContract<
   readonly body?: B;
   readonly response?: R;
   readonly binary?: string;
+  /** Media types of a body that is a stream of bytes instead of JSON. */
+  readonly takes?: readonly string[];
 }
 
 /** Keeps the literal types of a contract; what was left out reads as undefined. */

@@ -6,7 +6,7 @@
  * `buckets` buckets with min, max and mean. A bucket or sample that was not measured is NaN.
  */
 import { z } from 'zod';
-import { recordingId, trialId } from './common';
+import { line, problem, recordingId, trialId, wallTime } from './common';
 import { route } from './contract';
 
 export const windowQuery = z.object({
@@ -53,11 +53,35 @@ export const getWindow = route({
   binary: 'application/vnd.msgpack',
 });
 
+/** Lines of the answer to an import, one JSON value each: how far it is, then how it ended. */
+export const importLine = z.discriminatedUnion('state', [
+  z.object({ state: z.literal('storing'), samples: z.number().int(), of: z.number().int() }),
+  z.object({ state: z.literal('done'), recordingId, samples: z.number().int(), durationS: z.number(), rateHz: z.number(), gaps: z.number().int() }),
+  z.object({ state: z.literal('failed'), problem }),
+]);
+export type ImportLine = z.infer<typeof importLine>;
+
+export const importRecording = route({
+  id: 'recordings.import',
+  method: 'POST',
+  path: '/api/trials/:trialId/recording',
+  summary: 'File a recording as a planned trial: a CSV, gzipped or not, is looked through whole before anything of it is kept; faults are answered by line and column',
+  params: z.object({ trialId }),
+  query: z.object({
+    fileName: line(200),
+    /** Wall time of the first sample; without it the time of the import. */
+    startedAt: wallTime.optional(),
+  }),
+  takes: ['text/csv', 'application/gzip'],
+  binary: 'application/x-ndjson',
+});
+
 export const exportCsv = route({
   id: 'recordings.csv',
   method: 'GET',
   path: '/api/trials/:trialId/recording.csv',
-  summary: 'The recording of a trial as CSV, streamed',
+  summary: 'The recording of a trial as CSV, streamed; gzipped with gz=1',
   params: z.object({ trialId }),
+  query: z.object({ gz: z.enum(['0', '1']).default('0') }),
   binary: 'text/csv',
 });

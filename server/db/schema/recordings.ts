@@ -12,8 +12,9 @@ import { trials } from './sessions';
 
 export const recordings = pgTable('recordings', {
   id: id(),
-  deviceId: uuid('device_id').notNull().references(() => devices.id),
-  /** Made by the device, unique to it. */
+  /** null: it came as a file, not over the link. */
+  deviceId: uuid('device_id').references(() => devices.id),
+  /** Made by the device, unique to it; for a file its name. */
   run: text('run').notNull(),
   /** null: unfiled. */
   trialId: uuid('trial_id').references(() => trials.id),
@@ -36,6 +37,8 @@ export const recordings = pgTable('recordings', {
   startUncertaintyUs: doublePrecision('start_uncertainty_us'),
   endReason: text('end_reason').$type<'done' | 'stopped' | 'fault' | 'lost'>(),
   digest: text('digest'),
+  /** Of an imported file: how many decimals its time and its channels were printed with, to print the same digits again. */
+  decimals: jsonb('decimals').$type<{ time: number; channels: number[] }>(),
   statistics: jsonb('statistics').$type<Record<string, { min: number; max: number; mean: number; missing: number }>>(),
   closedAt: at('closed_at'),
   /** When the flags of this recording were found; null while they are not. */

@@ -2,7 +2,7 @@ import { desc, eq } from 'drizzle-orm';
 import type { Database } from '../../db/engine';
 import { recordings, sessions, trials } from '../../db/schema';
 
-const columns = { id: recordings.id, state: recordings.state, rateHz: recordings.rateHz, channels: recordings.channels, digest: recordings.digest };
+const columns = { id: recordings.id, state: recordings.state, rateHz: recordings.rateHz, channels: recordings.channels, digest: recordings.digest, decimals: recordings.decimals };
 
 export async function findRecording(db: Database, id: string) {
   const [row] = await db.select(columns).from(recordings).where(eq(recordings.id, id));

@@ -1,11 +1,13 @@
 import { Readable } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
-import { exportCsv, getWindow } from '@shared/api/recordings';
+import { createGzip } from 'node:zlib';
+import { exportCsv, getWindow, importRecording } from '@shared/api/recordings';
 import { pack } from '@shared/link';
 import { type ApiRouter, serve } from '../../http';
+import type { ImportService } from './import-service';
 import type { RecordingService } from './service';
 
-export function recordingRoutes(router: ApiRouter, recordings: RecordingService): void {
+export function recordingRoutes(router: ApiRouter, recordings: RecordingService, imports: ImportService): void {
   serve(router, getWindow, async ({ params, query, request, response }) => {
     const { body, tag } = await recordings.window(params.recordingId, query);
     // Closed recordings never change; still private, because who may see them can.
@@ -16,10 +18,28 @@ export function recordingRoutes(router: ApiRouter, recordings: RecordingService)
     return undefined;
   });
 
-  serve(router, exportCsv, async ({ params, response }) => {
+  serve(router, importRecording, async ({ params, query, person, request, response, note }) => {
+    const leaving = new AbortController();
+    response.once('close', () => leaving.abort());
+    note({ detail: { fileName: query.fileName } });
+    // Faults of the file are answered before anything is stored; from then on each line says how far it is.
+    const lines = await imports.begin(params.trialId, request, query, person, leaving.signal);
+    response.type('application/x-ndjson').set('Cache-Control', 'no-store');
+    for await (const line of lines) response.write(`${JSON.stringify(line)}\n`);
+    response.end();
+    return undefined;
+  });
+
+  serve(router, exportCsv, async ({ params, query, response }) => {
     const { name, pieces } = await recordings.csv(params.trialId);
-    response.type('text/csv; charset=utf-8').attachment(name).set('Cache-Control', 'no-store');
-    await pipeline(Readable.from(pieces), response);
+    response.set('Cache-Control', 'no-store');
+    if (query.gz === '1') {
+      response.type('application/gzip').attachment(`${name}.gz`);
+      await pipeline(Readable.from(pieces), createGzip(), response);
+    } else {
+      response.type('text/csv; charset=utf-8').attachment(name);
+      await pipeline(Readable.from(pieces), response);
+    }
     return undefined;
   });
 }

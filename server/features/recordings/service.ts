@@ -26,7 +26,7 @@ export function createRecordingService(db: Database) {
     async csv(trialId: string): Promise<{ name: string; pieces: AsyncGenerator<string> }> {
       const recording = await findRecordingOfTrial(db, trialId);
       if (recording === null) throw refuse('NOT_RECORDED');
-      const printer = createCsvPrinter(recording.channels);
+      const printer = createCsvPrinter(recording.channels, recording.decimals ?? undefined);
       async function* pieces() {
         yield printer.header();
         for await (const chunk of readChunks(db, recording?.id ?? '')) yield printer.rows(chunk);

@@ -1,8 +1,9 @@
 /** What changes sessions and trials. */
 import { and, count, eq, inArray, isNull, max } from 'drizzle-orm';
 import type { TrialState } from '@shared/api/sessions';
+import type { RigFile } from '@shared/rig';
 import type { Database } from '../../db/engine';
-import { conditions, devices, participants, rigRevisions, rigs, sessions, studies, tasks, trials } from '../../db/schema';
+import { conditions, devices, participants, recordings, rigRevisions, rigs, sessions, studies, tasks, trials } from '../../db/schema';
 import { type MoveName, moves, runningStates } from './trial-states';
 
 export interface PlannedTrial {
@@ -64,6 +65,16 @@ export async function holdSession(tx: Database, sessionId: string): Promise<Held
   const [row] = await tx.select({ id: sessions.id, studyId: sessions.studyId, state: sessions.state, rigCode: rigs.code, rigRevision: rigRevisions.revision }).from(sessions)
     .innerJoin(rigRevisions, eq(rigRevisions.id, sessions.rigRevisionId)).innerJoin(rigs, eq(rigs.id, rigRevisions.rigId)).where(eq(sessions.id, sessionId));
   return row ?? null;
+}
+
+export async function rigOfSession(db: Database, sessionId: string): Promise<{ rigRevisionId: string; rig: RigFile }> {
+  const [row] = await db.select({ rigRevisionId: rigRevisions.id, rig: rigRevisions.file }).from(sessions).innerJoin(rigRevisions, eq(rigRevisions.id, sessions.rigRevisionId)).where(eq(sessions.id, sessionId));
+  if (!row) throw new Error('A session without a rig');
+  return row;
+}
+
+export async function fileUnderTrial(tx: Database, recordingId: string, trialId: string): Promise<void> {
+  await tx.update(recordings).set({ trialId }).where(eq(recordings.id, recordingId));
 }
 
 export async function setSessionState(tx: Database, sessionId: string, state: 'open' | 'closed'): Promise<void> {

@@ -71,12 +71,12 @@ export const trialsToJudge = (db: Database, studyIds: readonly string[]) => tria
 export const trialsRecorded = (db: Database, studyIds: readonly string[], limit: number) => trialRows(db, and(inArray(trials.state, ['stopped', 'judged']), inStudies(db, studyIds)))
   .orderBy(desc(sql`(select max(r.started_at) from recordings r where r.trial_id = ${trials.id})`), desc(trials.id)).limit(limit);
 
-export type RecordingRow = typeof recordings.$inferSelect & { deviceName: string };
+export type RecordingRow = typeof recordings.$inferSelect & { deviceName: string | null };
 
 /** The newest recording of a trial. */
 export async function findRecordingOfTrial(db: Database, trialId: string): Promise<RecordingRow | null> {
   const [row] = await db.select({ recording: recordings, deviceName: devices.name }).from(recordings)
-    .innerJoin(devices, eq(devices.id, recordings.deviceId))
+    .leftJoin(devices, eq(devices.id, recordings.deviceId))
     .where(eq(recordings.trialId, trialId)).orderBy(desc(recordings.startedAt), desc(recordings.id)).limit(1);
   return row ? { ...row.recording, deviceName: row.deviceName } : null;
 }

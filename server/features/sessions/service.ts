@@ -1,13 +1,14 @@
 /** Planning and running: what people do with sessions and trials. */
-import type { DeviceId, SessionId, StudyId, TrialId } from '@shared/api/common';
+import type { DeviceId, RecordingId, SessionId, StudyId, TrialId } from '@shared/api/common';
 import { sessionId, trialId } from '@shared/api/common';
 import type { BodyOf } from '@shared/api/contract';
 import type { judgeTrial, planSession, TrialState } from '@shared/api/sessions';
+import type { RigFile } from '@shared/rig';
 import type { Database } from '../../db/engine';
 import type { DeviceControl } from '../../ingest/ports';
 import type { Bus } from '../../live/bus';
 import {
-  conditionsIn, type HeldSession, holdDevice, holdSession, insertSession, insertTrials, markRemoved, moveTrial, participantIsIn, placeOfTrial, type PlannedTrial, rigRevisionExists,
+  conditionsIn, fileUnderTrial, type HeldSession, holdDevice, holdSession, insertSession, insertTrials, markRemoved, moveTrial, participantIsIn, placeOfTrial, type PlannedTrial, rigOfSession, rigRevisionExists,
   setSessionState, stateOfStudy, tasksIn, trialHeldBy, type TrialPlace, trialsInState,
 } from './change-queries';
 import { refuse } from './errors';
@@ -191,10 +192,16 @@ export function createSessionService({ db, bus, control, now }: SessionDeps) {
       tellSession(session);
     },
 
+    /** Rig of the session that a recording is about to be filed into. Asked before a long import; the filing asks again. */
+    async rigForFiling(id: TrialId): Promise<{ rigRevisionId: string; rig: RigFile }> {
+      return change(id, 'file', async (tx, _trial, held) => rigOfSession(tx, held.id));
+    },
+
     /** Puts a whole recording that was made elsewhere into the book as this planned trial's. */
-    async fileRecording(id: TrialId, { deviceId, recordingId }: { deviceId: string; recordingId: string }, by: Actor): Promise<void> {
+    async fileRecording(id: TrialId, recordingId: RecordingId, by: Actor): Promise<void> {
       const session = await change(id, 'file', async (tx, trial, held) => {
-        await moveTrial(tx, id, 'file', { deviceId });
+        await moveTrial(tx, id, 'file', {});
+        await fileUnderTrial(tx, recordingId, id);
         if (held.state === 'planned') {
           await setSessionState(tx, held.id, 'open');
           await appendLog(tx, held.id, entry(by, 'session opened'));
@@ -203,6 +210,7 @@ export function createSessionService({ db, bus, control, now }: SessionDeps) {
         return sessionId.parse(held.id);
       });
       tellTrial(id, session, 'stopped');
+      bus.tell('recordingClosed', { recordingId, trialId: id });
     },
   };
 }

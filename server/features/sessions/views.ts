@@ -45,5 +45,5 @@ export const toRecordingMeta = (row: RecordingRow): RecordingMeta => ({
   startedAt: row.startedAt.toISOString(),
   startUncertaintyUs: row.startUncertaintyUs,
   rigRevisionId: rigRevisionId.parse(row.rigRevisionId),
-  deviceName: row.deviceName,
+  deviceName: row.deviceName ?? `file ${row.run}`,
 });

@@ -9,11 +9,12 @@ import { Empty } from '../../ui/Empty';
 import { Section } from '../../ui/Page';
 import { RuledTable, type RuledColumn } from '../../ui/RuledTable';
 import { AddTrialDialog } from './AddTrialDialog';
+import { FileRecordingDialog } from './FileRecordingDialog';
 import { OutcomeDialog } from './OutcomeDialog';
 import { RemoveTrialDialog } from './RemoveTrialDialog';
 import { conditionName, TrialName, TrialStateWord } from './TrialWords';
 
-type Open = { what: 'outcome' | 'remove'; trial: TrialSummary } | { what: 'add' } | null;
+type Open = { what: 'outcome' | 'remove' | 'file'; trial: TrialSummary } | { what: 'add' } | null;
 
 const unrecorded = (trial: TrialSummary) => trial.durationS === null;
 
@@ -63,6 +64,7 @@ export function RunSheet({ session, runs, removes }: RunSheetProps) {
               {trial.state === 'stopped' ? 'Give outcome' : 'Change outcome'}
             </Button>
           ) : null}
+          {adds && trial.state === 'planned' ? <Button tone="faint" onClick={() => setOpen({ what: 'file', trial })} about={`as trial ${trial.number}`}>File a recording</Button> : null}
           {removes && (trial.state === 'planned' || trial.state === 'stopped' || trial.state === 'judged') ? (
             <Button tone="faint" onClick={() => setOpen({ what: 'remove', trial })} about={`trial ${trial.number}`}>Take out</Button>
           ) : null}
@@ -84,6 +86,7 @@ export function RunSheet({ session, runs, removes }: RunSheetProps) {
         <RuledTable caption="Trials of this session" columns={columns} rows={session.trials} rowKey={(trial) => trial.id} marked={(trial) => trial.state === 'armed' || trial.state === 'recording' || trial.state === 'away'} />
       )}
       {open?.what === 'outcome' ? <OutcomeDialog trial={open.trial} onClose={close} /> : null}
+      {open?.what === 'file' ? <FileRecordingDialog trial={open.trial} onClose={close} /> : null}
       {open?.what === 'remove' ? <RemoveTrialDialog trial={open.trial} onClose={close} /> : null}
       {open?.what === 'add' && study ? <AddTrialDialog sessionId={session.id} study={study} onClose={close} /> : null}
     </Section>
