@@ -10,12 +10,12 @@ export type Quat = [number, number, number, number];
 export type Pose = { p: Vec3; q: Quat; grasp: number };
 
 /** How far a quaternion's norm may be from 1 and still count as a rotation written with few decimals. No unit. */
-const UNIT_NORM_TOLERANCE = 1e-6;
+const UNIT_NORM_TOLERANCE = 1e-5;
 
 /**
  * A pose that the kinematics can use: finite, with its quaternion brought to norm 1.
  *
- * @throws NumericError BAD_REQUEST when a number is not finite or q is not a unit quaternion within 1e-6
+ * @throws NumericError BAD_REQUEST when a number is not finite or q is not a unit quaternion within 1e-5
  */
 export function requirePose(pose: Pose): Pose {
   if (![...pose.p, ...pose.q, pose.grasp].every(Number.isFinite) || pose.p.length !== 3 || pose.q.length !== 4) {

@@ -15,8 +15,8 @@ import { defineCall, numbers, vec3 } from './call';
 
 const quaternion = z.tuple([z.number(), z.number(), z.number(), z.number()]);
 const pose = z.object({ p: vec3, q: quaternion, grasp: z.number() });
-// Read by the rig's own check, so that a faulty rig is BAD_RIG and not a fault of the request.
-const rig = z.record(z.string(), z.unknown());
+// Read by the rig's own check, so that a faulty rig, of whatever shape, is BAD_RIG and not a fault of the request.
+const rig = z.unknown().refine((value) => value !== undefined, 'is missing');
 
 export const rigCalls = {
   'rig.check': defineCall(z.object({ rig }), (request) => ({ faults: checkRig(request.rig) })),
