@@ -110,5 +110,6 @@ export const may = {
   note: (role: StudyRole) => seesSessions(role) === 'all',
   run: (role: StudyRole) => role === 'lead' || role === 'operator',
   remove: (role: StudyRole) => role === 'lead',
+  export: (role: StudyRole) => role === 'lead',
   seeDevices: (role: LabRole) => role !== 'clinician',
 };

@@ -61,9 +61,10 @@ export function DevicesPage() {
     { key: 'state', head: 'State', plain: true, width: '12rem', cell: (row) => <DeviceState device={row} /> },
     {
       key: 'clock',
-      head: 'Its clock against ours',
+      head: 'Its clock known to',
       width: '14rem',
-      cell: (row) => (row.clock === null ? <span className="text-soft">not measured</span> : <>{microseconds(row.clock.offsetUs)} <span className="text-soft">± {microseconds(row.clock.uncertaintyUs)}</span></>),
+      // The offset itself says nothing: a device counts from when it was switched on.
+      cell: (row) => (row.clock === null ? <span className="text-soft">not measured</span> : <>± {microseconds(row.clock.uncertaintyUs)}</>),
     },
     { key: 'faults', head: 'Faults answered', width: '12rem', cell: (row) => <FaultCounts faults={row.faults} /> },
     ...(keeps ? [{
