@@ -1,7 +1,7 @@
 /** Sign-in and the one place that says who may do what. */
 export { hashPassword } from 'better-auth/crypto';
-export { createSignIn, invitationDays, type SignInDesk } from './sign-in';
+export { createSignIn, invitationDays, type Answered, type SignInDesk } from './sign-in';
 export { createGate, type Gate } from './gate';
-export { guards, may, seesSessions, type Guard, type Via } from './guards';
+export { guards, isOpen, may, seesSessions, type Guard, type Via } from './guards';
 export { fits, type Access, type Membership, type SignedIn } from './person';
 export { writeAudit } from './queries';

@@ -1,5 +1,6 @@
 /**
- * Sign-in by e-mail and password with better-auth, on our own tables.
+ * Sign-in by e-mail and password with better-auth, on our own tables and behind our own routes: its functions are
+ * called, its HTTP endpoints are not served.
  *
  * Nobody signs up: people are invited. Role and closed state are never taken from input. A closed person cannot sign
  * in, and a sign-in that was open when they were closed ends at the next request.
@@ -8,14 +9,17 @@ import { randomBytes } from 'node:crypto';
 import type { IncomingHttpHeaders } from 'node:http';
 import { betterAuth } from 'better-auth';
 import { APIError } from 'better-auth/api';
-import { fromNodeHeaders, toNodeHandler } from 'better-auth/node';
-import type { RequestHandler } from 'express';
+import { fromNodeHeaders } from 'better-auth/node';
 import type { Logger } from 'pino';
 import { labRole, personId } from '@shared/api/common';
+import type { BodyOf } from '@shared/api/contract';
+import type { changePassword, makeSignIn, resetPassword, SignInEntry } from '@shared/api/sign-in';
 import type { Database } from '../db/engine';
+import { refuseRequest, type Refusal } from '../http';
 import { passwordReset, type Post } from '../mail';
+import { refuse } from './errors';
 import type { SignedIn } from './person';
-import { isClosed, settingOr, signInTables, writeAudit } from './queries';
+import { isClosed, settingOr, signInTables } from './queries';
 
 /** Seconds. A sign-in lasts a working day after its last use. */
 const signInLastsS = 12 * 3600;
@@ -23,11 +27,27 @@ const refreshAfterS = 3600;
 const resetLastsS = 3600;
 export const invitationDays = 7;
 
+/** What a sign-in answers, and the cookies that should go out with it. */
+export interface Answered<T> {
+  answer: T;
+  setCookies: string[];
+}
+
+/** Every method that refuses throws a Refusal. */
 export interface SignInDesk {
-  /** Serves /api/auth/*. */
-  handler: RequestHandler;
-  /** `setCookies` are cookies that prolong the sign-in and should go out with the answer. */
+  /** `setCookies` prolong the sign-in. */
   whoIs(headers: IncomingHttpHeaders): Promise<{ person: SignedIn; setCookies: string[] } | null>;
+  signIn(headers: IncomingHttpHeaders, entry: BodyOf<typeof makeSignIn>): Promise<Answered<{ id: string; name: string }>>;
+  signOut(headers: IncomingHttpHeaders): Promise<Answered<void>>;
+  present(headers: IncomingHttpHeaders): Promise<SignInEntry | null>;
+  list(headers: IncomingHttpHeaders): Promise<SignInEntry[]>;
+  /** A token of somebody else ends nothing. */
+  end(headers: IncomingHttpHeaders, token: string): Promise<Answered<void>>;
+  endOthers(headers: IncomingHttpHeaders): Promise<void>;
+  changePassword(headers: IncomingHttpHeaders, change: BodyOf<typeof changePassword>): Promise<Answered<void>>;
+  /** Takes as long for an unknown address as for a known one: the letter goes out behind the answer. */
+  requestReset(email: string): Promise<void>;
+  resetPassword(change: BodyOf<typeof resetPassword>): Promise<{ id: string; name: string }>;
   /** Makes a token with which an invited person sets their password. */
   invitationToken(personId: string): Promise<string>;
 }
@@ -50,11 +70,6 @@ export async function createSignIn({ db, post, log, authSecret, publicUrl }: Sig
     secret,
     telemetry: { enabled: false },
     logger: { level: 'warn', log: (level, message) => log[level === 'error' ? 'warn' : 'debug']({ from: 'sign-in' }, String(message)) },
-    // Served under whatever host the browser used: a page of the same host is at home, others are refused.
-    trustedOrigins: (request) => {
-      const host = request?.headers.get('host');
-      return [publicUrl(), ...(host ? [`http://${host}`, `https://${host}`] : [])];
-    },
     database: signInTables(db),
     user: {
       modelName: 'people',
@@ -76,38 +91,23 @@ export async function createSignIn({ db, post, log, authSecret, publicUrl }: Sig
       async sendResetPassword({ user, token }) {
         if (await isClosed(db, user.id)) return;
         const link = `${publicUrl()}/reset?token=${encodeURIComponent(token)}`;
-        await post.send(user.email, passwordReset({ name: user.name, link, minutes: resetLastsS / 60 }));
-      },
-      async onPasswordReset({ user }) {
-        await writeAudit(db, { actor: user.id, who: user.name, action: 'auth.passwordReset', subject: user.id });
+        post.sendBehind(user.email, passwordReset({ name: user.name, link, minutes: resetLastsS / 60 }));
       },
     },
     databaseHooks: {
       session: {
         create: {
           async before({ userId }) {
-            if (await isClosed(db, userId)) throw new APIError('FORBIDDEN', { code: 'PERSON_CLOSED', message: 'Your access to this lab is closed. Ask an administrator.' });
-          },
-          async after({ userId }) {
-            await writeAudit(db, { actor: userId, who: await nameOf(userId), action: 'auth.signIn', subject: userId });
+            if (await isClosed(db, userId)) throw refuse('PERSON_CLOSED');
           },
         },
       },
     },
-    disabledPaths: ['/sign-up/email', '/update-user', '/change-email', '/delete-user', '/link-social', '/unlink-account', '/sign-in/social'],
-    // Attempts are limited by our own shield, before they come here.
-    rateLimit: { enabled: false },
-    advanced: { cookiePrefix: 'tautbook', useSecureCookies: publicUrl().startsWith('https:'), disableOriginCheck: false },
+    advanced: { cookiePrefix: 'tautbook', useSecureCookies: publicUrl().startsWith('https:') },
   });
   const context = await auth.$context;
 
-  async function nameOf(userId: string): Promise<string> {
-    return (await context.internalAdapter.findUserById(userId))?.name ?? userId;
-  }
-
-  const nodeHandler = toNodeHandler(auth);
   return {
-    handler: (req, res) => nodeHandler(req, res),
     async whoIs(headers) {
       if (headers.cookie === undefined) return null;
       const { response, headers: answer } = await auth.api.getSession({ headers: fromNodeHeaders(headers), returnHeaders: true });
@@ -115,6 +115,50 @@ export async function createSignIn({ db, post, log, authSecret, publicUrl }: Sig
       const { id, name, email, role } = response.user;
       return { person: { id: personId.parse(id), name, email, role: labRole.parse(role) }, setCookies: answer.getSetCookie() };
     },
+
+    async signIn(headers, body) {
+      const { answer, setCookies } = await settle(auth.api.signInEmail({ body, headers: fromNodeHeaders(headers), returnHeaders: true }));
+      return { answer: { id: answer.user.id, name: answer.user.name }, setCookies };
+    },
+
+    async signOut(headers) {
+      return withoutAnswer(await settle(auth.api.signOut({ headers: fromNodeHeaders(headers), returnHeaders: true })));
+    },
+
+    async present(headers) {
+      const found = await auth.api.getSession({ headers: fromNodeHeaders(headers) });
+      return found === null || found.user.closed === true ? null : toEntry(found.session);
+    },
+
+    async list(headers) {
+      const { answer } = await settle(auth.api.listSessions({ headers: fromNodeHeaders(headers), returnHeaders: true }));
+      return answer.map(toEntry);
+    },
+
+    async end(headers, token) {
+      return withoutAnswer(await settle(auth.api.revokeSession({ body: { token }, headers: fromNodeHeaders(headers), returnHeaders: true })));
+    },
+
+    async endOthers(headers) {
+      await settle(auth.api.revokeOtherSessions({ headers: fromNodeHeaders(headers), returnHeaders: true }));
+    },
+
+    async changePassword(headers, body) {
+      return withoutAnswer(await settle(auth.api.changePassword({ body: { ...body, revokeOtherSessions: true }, headers: fromNodeHeaders(headers), returnHeaders: true })));
+    },
+
+    async requestReset(email) {
+      await settle(auth.api.requestPasswordReset({ body: { email }, returnHeaders: true }));
+    },
+
+    async resetPassword({ token, newPassword }) {
+      const owner = await context.internalAdapter.findVerificationValue(`reset-password:${token}`);
+      const person = owner && await context.internalAdapter.findUserById(owner.value);
+      if (!person) throw refuse('INVALID_TOKEN');
+      await settle(auth.api.resetPassword({ body: { token, newPassword }, returnHeaders: true }));
+      return { id: person.id, name: person.name };
+    },
+
     async invitationToken(userId) {
       const token = randomBytes(24).toString('base64url');
       await context.internalAdapter.createVerificationValue({
@@ -125,4 +169,42 @@ export async function createSignIn({ db, post, log, authSecret, publicUrl }: Sig
       return token;
     },
   };
+}
+
+const withoutAnswer = ({ setCookies }: Answered<unknown>): Answered<void> => ({ answer: undefined, setCookies });
+
+interface StoredSignIn {
+  token: string;
+  userAgent?: string | null | undefined;
+  createdAt: Date;
+  expiresAt: Date;
+}
+
+const toEntry = ({ token, userAgent, createdAt, expiresAt }: StoredSignIn): SignInEntry => ({
+  token, userAgent: userAgent ?? null, createdAt: createdAt.toISOString(), expiresAt: expiresAt.toISOString(),
+});
+
+/** What better-auth answers or refuses, in our terms. Codes that no caller can cause stay what they are: faults. */
+async function settle<T>(work: Promise<{ response: T; headers: Headers }>): Promise<Answered<T>> {
+  try {
+    const { response, headers } = await work;
+    return { answer: response, setCookies: headers.getSetCookie() };
+  } catch (error) {
+    throw (error instanceof APIError && refusalOf(String(error.body?.code))) || error;
+  }
+}
+
+function refusalOf(code: string): Refusal | null {
+  switch (code) {
+    case 'INVALID_EMAIL_OR_PASSWORD':
+    case 'INVALID_PASSWORD':
+    case 'INVALID_TOKEN':
+      return refuse(code);
+    case 'USER_NOT_FOUND': // the person of a link is gone
+      return refuse('INVALID_TOKEN');
+    case 'UNAUTHORIZED': // the sign-in ended between the guard's look and now
+      return refuseRequest('SIGN_IN');
+    default:
+      return null;
+  }
 }

@@ -14,6 +14,8 @@ import { refuse } from './errors';
 
 /** What a change is about, for the audit trail; never a secret. */
 export interface AuditNote {
+  /** Who it turned out to be, where nobody was signed in yet. */
+  by?: { id: string; name: string };
   subject?: string;
   detail?: Record<string, unknown>;
 }
@@ -104,21 +106,22 @@ export function serve<C extends RouteContract>(router: ApiRouter, contract: C, h
       note: (more) => { Object.assign(about, more); },
     });
 
-    if (isAudited(contract, access)) await router.audit(auditLine(contract, access, params, about, answer));
+    const by = about.by ?? access.person;
+    if (by !== null && isAudited(contract, access)) await router.audit(auditLine(contract, by, access, params, about, answer));
     if (contract.binary !== undefined) return;
     res.set('Cache-Control', 'no-store');
     res.json(router.checkResponses && contract.response ? checked(contract, answer) : answer);
   });
 }
 
-/** Every change by anyone, and every read of a study's data by a clinician. */
+/** Every change by anyone known, and every read of a study's data by a clinician. */
 const isAudited = (contract: RouteContract, access: Access) => contract.method !== 'GET' || access.membership?.role === 'clinician';
 
-function auditLine(contract: RouteContract, access: Access, params: Record<string, string>, about: AuditNote, answer: unknown): AuditLine {
+function auditLine(contract: RouteContract, by: { id: string; name: string }, access: Access, params: Record<string, string>, about: AuditNote, answer: unknown): AuditLine {
   const idOfAnswer = (answer as { id?: unknown } | undefined)?.id;
   return {
-    actor: access.person?.id ?? 'system',
-    who: access.person?.name ?? 'nobody signed in',
+    actor: by.id,
+    who: by.name,
     action: contract.id,
     subject: about.subject ?? Object.values(params).at(-1) ?? (typeof idOfAnswer === 'string' || typeof idOfAnswer === 'number' ? String(idOfAnswer) : ''),
     detail: { ...params, ...(access.membership ? { studyId: access.membership.studyId } : {}), ...about.detail },

@@ -8,6 +8,7 @@ import { createTransport } from 'nodemailer';
 import type { Logger } from 'pino';
 import type { Config } from '../config';
 import type { Database } from '../db/engine';
+import { describeFault } from '../http';
 import { keepMail, latestMail, type MailRow } from './queries';
 import type { Letter } from './templates';
 
@@ -18,8 +19,11 @@ export interface Post {
   /** False: letters stay in the outbox. */
   readonly smtp: boolean;
   send(to: string, letter: Letter): Promise<'outbox' | 'sent' | 'failed'>;
+  /** Sends while the caller goes on: for answers whose time must not tell whether there is somebody to write to. */
+  sendBehind(to: string, letter: Letter): void;
   latest(limit: number): Promise<MailRow[]>;
-  close(): void;
+  /** Waits for letters that are on their way. */
+  close(): Promise<void>;
 }
 
 /** ms; a mail server that does not answer must not hold the page that waits. */
@@ -47,14 +51,26 @@ export function createPost(db: Database, config: Pick<Config, 'smtp' | 'mailFrom
     }
   }
 
+  async function send(to: string, letter: Letter): Promise<'outbox' | 'sent' | 'failed'> {
+    const { state, failure } = await deliver(to, letter);
+    await keepMail(db, { recipient: to, ...letter, state, failure: failure ?? null });
+    return state;
+  }
+
+  const behind = new Set<Promise<unknown>>();
   return {
     smtp: smtp !== undefined,
-    async send(to, letter) {
-      const { state, failure } = await deliver(to, letter);
-      await keepMail(db, { recipient: to, ...letter, state, failure: failure ?? null });
-      return state;
+    send,
+    sendBehind(to, letter) {
+      const sending = send(to, letter)
+        .catch((error: unknown) => log.error({ fault: describeFault(error) }, 'a mail could not be kept'))
+        .finally(() => behind.delete(sending));
+      behind.add(sending);
     },
     latest: (limit) => latestMail(db, limit),
-    close: () => transport?.close(),
+    async close() {
+      await Promise.all(behind);
+      transport?.close();
+    },
   };
 }

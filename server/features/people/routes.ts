@@ -6,7 +6,7 @@ export function peopleRoutes(router: ApiRouter, people: PeopleService): void {
   serve(router, getEntrance, () => people.entrance());
   serve(router, setUp, async ({ body, note }) => {
     const made = await people.setUp(body);
-    note({ subject: made.id, detail: { name: made.name, role: made.role } });
+    note({ by: made, subject: made.id, detail: { name: made.name, role: made.role } });
     return { done: true as const };
   });
   serve(router, getMe, ({ person }) => people.me(person));

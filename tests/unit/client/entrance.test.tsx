@@ -16,7 +16,7 @@ describe('the entrance', () => {
       'GET /api/entrance': entrance,
       'POST /api/auth/sign-in/email': () => {
         inside = true;
-        return { token: 't', user: { id: 'p-1' } };
+        return { done: true };
       },
       'GET /api/auth/list-sessions': [],
       'GET /api/auth/get-session': null,
@@ -37,7 +37,7 @@ describe('the entrance', () => {
       'GET /api/entrance': entrance,
       'POST /api/auth/sign-in/email': () => {
         inside = true;
-        return { token: 't', user: { id: 'p-1' } };
+        return { done: true };
       },
     });
     await screen.findByRole('heading', { name: 'Sign in' });
@@ -64,7 +64,7 @@ describe('the entrance', () => {
   test('a wrong password is told in an alert, and what was typed stays', async () => {
     openBook('/sign-in', {
       'GET /api/entrance': entrance,
-      'POST /api/auth/sign-in/email': new Response(JSON.stringify({ code: 'INVALID_EMAIL_OR_PASSWORD', message: 'x' }), { status: 401, headers: { 'content-type': 'application/json' } }),
+      'POST /api/auth/sign-in/email': refusal(401, 'INVALID_EMAIL_OR_PASSWORD', { detail: 'E-mail and password do not fit together.' }),
     });
     await screen.findByRole('heading', { name: 'Sign in' });
     type('E-mail', 'ines@lab.example');

@@ -1,0 +1,1 @@
+export { signInRoutes } from './routes';
