@@ -7,11 +7,11 @@ import { addressOf } from '../../lib/api';
 export function Leafing({ trial }: { trial: Trial }) {
   return (
     <div className="flex gap-x-4">
-    <nav aria-label="Trials of this session" className="flex gap-x-4 text-small whitespace-nowrap">
-      {trial.previous ? <Link to={`/trials/${trial.previous}`} className="text-soft hover:text-ink">before</Link> : null}
-      {trial.next ? <Link to={`/trials/${trial.next}`} className="text-soft hover:text-ink">next</Link> : null}
-    </nav>
-    {trial.may.export && trial.recording?.state === 'closed' ? <a href={addressOf(exportCsv, { params: { trialId: trial.id }, query: { gz: '1' } })} download className="text-small text-soft hover:text-ink">CSV<span className="sr-only"> of the recording, gzipped</span></a> : null}
+      <nav aria-label="Trials of this session" className="flex gap-x-4 text-small whitespace-nowrap">
+        {trial.previous ? <Link to={`/trials/${trial.previous}`} className="text-soft hover:text-ink">before</Link> : null}
+        {trial.next ? <Link to={`/trials/${trial.next}`} className="text-soft hover:text-ink">next</Link> : null}
+      </nav>
+      {trial.may.export && trial.recording?.state === 'closed' ? <a href={addressOf(exportCsv, { params: { trialId: trial.id }, query: { gz: '1' } })} download className="text-small text-soft hover:text-ink">CSV<span className="sr-only"> of the recording, gzipped</span></a> : null}
     </div>
   );
 }
