@@ -38,15 +38,15 @@ const FAR_FROM_START = 0.5;
  * @param start   first guess; the rig's home when absent
  * @param solver  of the same rig, to save its memory in a loop
  * @throws NumericError BAD_REQUEST for wrong, non-positive or non-finite numbers; SINGULAR when the lengths do not tell
- *         the pose there (rank below 7); UNDEFINED when a cable has no length at the start
+ *         the pose there (rank below 7); UNDEFINED when a cable has no length both at the start and at home
  * @source Gauss-Newton on cable lengths (e.g. Pott 2010); see `createForwardSolver`
  */
 export function forwardKinematics(rig: RigModel, lengths: ArrayLike<number>, start: Pose = rig.home, solver: ForwardSolver = createForwardSolver(rig)): ForwardAnswer {
   requireNumbers(lengths, rig.cableCount, 'A set of lengths');
   if (Array.from(lengths).some((length) => length <= 0)) throw new NumericError('BAD_REQUEST', 'A cable length needs to be above zero.');
   const first = solveFrom(rig, lengths, requirePose(start), solver);
-  if (first.status === 'missing') throw new NumericError('UNDEFINED', 'At the start a cable has no length. Start from another pose.');
   const found = isPlausible(rig, start, first) ? first : better(rig, first, solveFrom(rig, lengths, rig.home, solver));
+  if (found.status === 'missing') throw new NumericError('UNDEFINED', 'At the start and at home a cable has no length. Start from another pose.');
   const converged = found.status === 'solved';
   if (found.status === 'singular' || (converged && rankAt(rig, found.pose) < 7)) {
     throw new NumericError('SINGULAR', 'Some motion leaves all cable lengths unchanged here, so the lengths do not tell the pose.');
@@ -73,11 +73,12 @@ function isPlausible(rig: RigModel, start: Pose, { status, pose, residualRms }: 
   return status === 'solved' && residualRms <= DOUBTFUL_RESIDUAL && inFrame && inRange && geodesicAngle(start.q, pose.q) <= FAR_FROM_START;
 }
 
-/** The attempt from home when it fits better, or when the first fits no better than noise would and only home's is plausible. */
+/** The attempt from home when it is plausible and the first is no exact fit that it lacks; otherwise the one that fits better. */
 function better(rig: RigModel, first: Attempt, second: Attempt): Attempt {
   const iterations = first.iterations + second.iterations;
-  const fits = second.residualRms < first.residualRms || (first.residualRms > EXACT && isPlausible(rig, rig.home, second));
-  return { ...(second.status === 'solved' && (first.status !== 'solved' || fits) ? second : first), iterations };
+  if (second.status !== 'solved') return { ...(first.status === 'missing' ? second : first), iterations };
+  const fits = second.residualRms < first.residualRms || (isPlausible(rig, rig.home, second) && (first.residualRms > EXACT || second.residualRms <= EXACT));
+  return { ...(first.status !== 'solved' || fits ? second : first), iterations };
 }
 
 function rankAt(rig: RigModel, pose: Pose): number {

@@ -83,5 +83,6 @@ export function lengthEquations(rig: RigModel, pose: Float64Array, lengths: Arra
   M[15] = m50; M[16] = m51; M[17] = m52; M[18] = m53; M[19] = m54; M[20] = m55;
   M[21] = m60; M[22] = m61; M[23] = m62; M[24] = m63; M[25] = m64; M[26] = m65; M[27] = m66;
   h[0] = h0; h[1] = h1; h[2] = h2; h[3] = h3; h[4] = h4; h[5] = h5; h[6] = h6;
-  return sum;
+  // A cable without length has no unit vector: these entries are then not numbers, while its error still is one.
+  return m00 + m11 + m22 > 0 ? sum : Number.NaN;
 }
