@@ -3,8 +3,6 @@
  * serious or worse), nothing that scrolls sideways, nothing that the keyboard cannot reach or that hides its focus, no
  * complaint of the browser. Pictures go to .screens/, to be looked at.
  */
-import { mkdirSync } from 'node:fs';
-import { dirname } from 'node:path';
 import { matchPath, type RouteObject } from 'react-router-dom';
 import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
@@ -24,7 +22,7 @@ import { seriousFindings } from '../support/axe';
 import { launchBrowser, type Visitor, visitor } from '../support/browser';
 import { type DemoHouse, openDemoHouse, screenFile } from './support/demo-lab';
 import { labAddresses, type LabAddresses } from './support/lab-addresses';
-import { overflowing, settled, walkByKeyboard } from './support/looking';
+import { overflowing, pictureWhole, settled, walkByKeyboard } from './support/looking';
 
 const widths = [{ name: 'wide', width: 1440, height: 900 }, { name: 'narrow', width: 390, height: 844 }] as const;
 const lamps = ['light', 'dark'] as const;
@@ -90,9 +88,7 @@ async function lookAt({ page, complaints }: Visitor, address: string, picture: s
       await page.emulateMedia({ colorScheme });
       await settled(page);
       wrong.push(...(await seriousFindings(page)).map((finding) => `${look}: ${finding}`), ...(await overflowing(page)).map((text) => `${look}: ${text}`));
-      const path = screenFile(`${picture}-${name}-${colorScheme}`);
-      mkdirSync(dirname(path), { recursive: true });
-      await page.screenshot({ path, fullPage: true });
+      await pictureWhole(page, screenFile(`${picture}-${name}-${colorScheme}`), size);
     }
     const { unreached, unseen } = await walkByKeyboard(page);
     wrong.push(...unreached.map((control) => `${name}: Tab never comes to ${control}`), ...unseen.map((control) => `${name}: no visible focus on ${control}`));

@@ -7,7 +7,7 @@ export function NotFoundPage() {
     <Page title="No such page" margin="nothing here">
       <Section>
         <p className="max-w-[40rem]">
-          The address may be mistyped, the page may have been taken out, or it belongs to a study you are not a member of. A study’s lead can add you.
+          The address may be mistyped, the page may have been taken out, or it belongs to a study or a session that is not open to you. A study’s lead can change that.
         </p>
         <div className="mt-6 flex gap-3">
           <ButtonLink tone="main" to="/">To Today</ButtonLink>

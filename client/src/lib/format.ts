@@ -6,6 +6,8 @@
  */
 const MINUS = '\u2212';
 const THIN = '\u202f';
+/** Between a number and its unit: the two never part at the end of a line. */
+const UNBROKEN = '\u00a0';
 
 /** A number with a fixed count of decimals and a true minus sign; "not measured" when it is not finite. */
 export function fixed(value: number, decimals: number): string {
@@ -14,7 +16,7 @@ export function fixed(value: number, decimals: number): string {
   return value < 0 && Number(text) !== 0 ? MINUS + text : text;
 }
 
-const withUnit = (value: number, decimals: number, unit: string) => (Number.isFinite(value) ? `${fixed(value, decimals)} ${unit}` : 'not measured');
+const withUnit = (value: number, decimals: number, unit: string) => (Number.isFinite(value) ? fixed(value, decimals) + UNBROKEN + unit : 'not measured');
 
 export const newtons = (valueN: number): string => withUnit(valueN, Math.abs(valueN) < 10 ? 2 : 1, 'N');
 /** @param valueM metres */
@@ -46,11 +48,12 @@ export const clockSpan = (startS: number, endS: number, decimals: 0 | 1 | 2 | 3 
 /** A length of time: 0.33 s, 58.0 s, 4 min 12 s, 1 h 02 min. */
 export function duration(seconds: number): string {
   if (!Number.isFinite(seconds)) return 'not measured';
-  if (seconds < 60) return `${fixed(seconds, seconds < 10 ? 2 : 1)} s`;
+  if (seconds < 60) return withUnit(seconds, seconds < 10 ? 2 : 1, 's');
   const whole = Math.round(seconds);
-  if (whole < 3600) return `${Math.floor(whole / 60)} min ${String(whole % 60).padStart(2, '0')} s`;
+  const pair = (large: number, largeUnit: string, small: number, smallUnit: string) => [large, largeUnit, String(small).padStart(2, '0'), smallUnit].join(UNBROKEN);
+  if (whole < 3600) return pair(Math.floor(whole / 60), 'min', whole % 60, 's');
   const minutes = Math.round(whole / 60);
-  return `${Math.floor(minutes / 60)} h ${String(minutes % 60).padStart(2, '0')} min`;
+  return pair(Math.floor(minutes / 60), 'h', minutes % 60, 'min');
 }
 
 /** An offset or uncertainty of a clock: µs below 1 ms, ms below 10 s, else s. */

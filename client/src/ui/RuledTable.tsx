@@ -45,7 +45,7 @@ export function RuledTable<Row>({ caption, columns, rows, rowKey, marked }: Rule
       </thead>
       <tbody role="rowgroup" className="max-sm:block max-sm:border-t max-sm:border-rule-strong">
         {rows.map((row) => (
-          <tr key={rowKey(row)} role="row" className={classNames('border-b border-rule max-sm:flex max-sm:flex-wrap max-sm:gap-x-5 max-sm:gap-y-0.5 max-sm:py-2.5', marked?.(row) && 'bg-sheet shadow-none outline-0 [box-shadow:inset_3px_0_0_var(--ink)] sm:[&>td:first-child]:pl-3 max-sm:pl-3')}>
+          <tr key={rowKey(row)} role="row" className={classNames('border-b border-rule max-sm:flex max-sm:flex-wrap max-sm:items-baseline max-sm:gap-x-5 max-sm:gap-y-0.5 max-sm:py-2.5', marked?.(row) && 'bg-sheet shadow-none outline-0 [box-shadow:inset_3px_0_0_var(--ink)] sm:[&>td:first-child]:pl-3 max-sm:pl-3')}>
             {columns.map((column) => (
               <td key={column.key} role="cell" className={classNames('align-top sm:py-3 sm:pr-5 last:pr-0 max-sm:text-small', column.align === 'right' && 'sm:text-right', column.lead && 'max-sm:basis-full max-sm:text-body', column.blank?.(row) && 'max-sm:hidden')}>
                 {!column.lead && !column.plain && column.head !== '' ? <span aria-hidden className="sm:hidden text-soft">{column.head.toLowerCase()} </span> : null}

@@ -10,7 +10,7 @@ export function Mark({ className }: { className?: string }) {
 
 export function Wordmark() {
   return (
-    <span className="inline-flex items-center gap-2.5">
+    <span className="flex items-center gap-2.5">
       <Mark />
       <span className="text-lead font-extrabold tracking-tight">tautbook</span>
     </span>

@@ -1,4 +1,6 @@
 /** What can be seen of a page from outside: whether it has settled, whether it fits, what the keyboard reaches. */
+import { mkdirSync } from 'node:fs';
+import { dirname } from 'node:path';
 import type { Page } from 'playwright-core';
 
 /** The page shows what it has to show: its heading, no waiting lines, its faces, its scene where it has one. */
@@ -25,15 +27,19 @@ export function overflowing(page: Page): Promise<string[]> {
   });
 }
 
-/** Texts that are cut off by their own box. */
-export function cutOff(page: Page): Promise<string[]> {
-  return page.evaluate(() => [...document.querySelectorAll<HTMLElement>('main *, header *')]
-    .filter((element) => {
-      const style = getComputedStyle(element);
-      if (style.overflowX === 'visible' || style.position === 'absolute' || element.clientWidth <= 1) return false;
-      return element.scrollWidth > element.clientWidth + 1 && !/auto|scroll/.test(style.overflowX);
-    })
-    .map((element) => `${element.tagName.toLowerCase()} "${(element.textContent ?? '').slice(0, 60)}"`));
+/**
+ * A picture of the whole page, in a window as high as the page: the browser's own picture of more than the window
+ * stretches canvases.
+ */
+export async function pictureWhole(page: Page, path: string, size: { width: number; height: number }): Promise<void> {
+  mkdirSync(dirname(path), { recursive: true });
+  const height = await page.evaluate(() => document.documentElement.scrollHeight);
+  if (height > size.height) {
+    await page.setViewportSize({ width: size.width, height });
+    await settled(page);
+  }
+  await page.screenshot({ path });
+  if (height > size.height) await page.setViewportSize(size);
 }
 
 export interface KeyboardWalk {
@@ -78,5 +84,6 @@ export async function walkByKeyboard(page: Page): Promise<KeyboardWalk> {
     if (!reached.has(at.index) && !at.seen) unseen.push(controls[at.index] ?? '');
     reached.add(at.index);
   }
+  await page.evaluate(() => (document.activeElement as HTMLElement | null)?.blur());
   return { unreached: controls.filter((_, index) => !reached.has(index)), unseen, reached: reached.size };
 }

@@ -12,10 +12,14 @@ describe('numbers and times as a reader meets them', () => {
   });
 
   test('lengths of time change their unit where a reader would', () => {
-    expect(duration(0.333)).toBe('0.33 s');
-    expect(duration(58)).toBe('58.0 s');
-    expect(duration(252)).toBe('4 min 12 s');
-    expect(duration(3720)).toBe('1 h 02 min');
+    expect(duration(0.333)).toBe('0.33\u00a0s');
+    expect(duration(58)).toBe('58.0\u00a0s');
+    expect(duration(252)).toBe('4\u00a0min\u00a012\u00a0s');
+    expect(duration(3720)).toBe('1\u00a0h\u00a002\u00a0min');
+  });
+
+  test('a number never parts from its unit at the end of a line', () => {
+    for (const text of [newtons(12.4), millimetres(0.0004), duration(41), duration(252), duration(3720), microseconds(210)]) expect(text).not.toContain(' ');
   });
 
   test('a full turn is 360 degrees, and a minus is a minus sign, but never before zero', () => {
@@ -25,9 +29,9 @@ describe('numbers and times as a reader meets them', () => {
   });
 
   test('offsets of clocks keep three meaningful digits from µs to s', () => {
-    expect(microseconds(210)).toBe('210 µs');
-    expect(microseconds(-1532)).toBe('−1.53 ms');
-    expect(microseconds(12_000_000)).toBe('12.0 s');
+    expect(microseconds(210)).toBe('210\u00a0µs');
+    expect(microseconds(-1532)).toBe('−1.53\u00a0ms');
+    expect(microseconds(12_000_000)).toBe('12.0\u00a0s');
   });
 
   test('one is singular, everything else plural', () => expect([0, 1, 2].map((n) => counted(n, 'trial'))).toEqual(['0 trials', '1 trial', '2 trials']));

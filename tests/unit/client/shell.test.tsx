@@ -62,7 +62,7 @@ describe('the binding', () => {
 
   test('a page one may not open says what the server said, inside the binding', async () => {
     openBook('/people', { ...lab('operator'), 'GET /api/people': refusal(403, 'FORBIDDEN', { wayOut: 'Ask the administrator.' }) });
-    await screen.findByRole('heading', { name: 'This page could not be opened' });
+    await screen.findByRole('heading', { name: 'This page is not open to you' });
     expect(screen.getByRole('alert').textContent).toContain('Ask the administrator.');
     expect(chapters()).toContain('Studies');
   });

@@ -16,7 +16,7 @@ export function AccountPage() {
           <Fact name="Role in the lab">{ROLE_WORDS[me.role]}</Fact>
           <Fact name="Studies">
             {me.memberships.length === 0 ? <span className="text-soft">none; a study’s lead can add you</span> : (
-              <ul>{me.memberships.map((membership) => <li key={membership.studyId}>{membership.studyTitle}, {STUDY_ROLE_WORDS[membership.role]}{membership.blind ? ', blind to conditions' : ''}</li>)}</ul>
+              <ul>{me.memberships.map((membership) => <li key={membership.studyId}>{membership.studyTitle} <span className="text-soft">· {STUDY_ROLE_WORDS[membership.role]}{membership.blind ? ', blind to conditions' : ''}</span></li>)}</ul>
             )}
           </Fact>
         </Facts>

@@ -18,7 +18,7 @@ export function NameForm({ name }: { name: string }) {
   const save = useMutation({ mutationFn: (body: Entry) => call(changeMe, { body }), onSuccess: (me) => queries.setQueryData(meQuery.queryKey, me) });
   return (
     <form noValidate className="max-w-[32rem] grid gap-3" onSubmit={form.handleSubmit((values) => save.mutate(values))}>
-      <TextField label="Name" autoComplete="name" error={form.formState.errors.name?.message} {...form.register('name')} />
+      <TextField label="Name" labelHidden autoComplete="name" error={form.formState.errors.name?.message} {...form.register('name')} />
       <ProblemNote error={save.error} />
       <div className="flex items-center gap-4"><Button type="submit" busy={save.isPending}>Keep the name</Button><span role="status" className="text-small text-soft">{save.isSuccess ? 'Kept.' : ''}</span></div>
     </form>

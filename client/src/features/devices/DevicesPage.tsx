@@ -25,7 +25,7 @@ const STATES: Readonly<Record<Device['state'], { word: string; tone: StateTone }
 function DeviceState({ device }: { device: Device }) {
   const { word, tone } = STATES[device.state];
   const since = device.state === 'revoked' && device.revokedAt !== null ? wallTime(device.revokedAt) : device.state === 'registered' ? (device.lastSeenAt === null ? 'never seen' : `last seen ${wallTime(device.lastSeenAt)}`) : null;
-  return <><StateWord tone={tone}>{word}</StateWord>{since ? <span className="block text-small text-soft">{since}</span> : null}</>;
+  return <><StateWord tone={tone}>{word}</StateWord>{since ? <span className="sm:block text-small text-soft"><span className="sm:hidden">, </span>{since}</span> : null}</>;
 }
 
 function FaultCounts({ faults }: { faults: Device['faults'] }) {

@@ -58,8 +58,8 @@ function DemoSignIns({ entries, onSignedIn }: DemoSignInsProps) {
       <p className="text-small text-soft mb-2">Invented people and participants; recordings made by a simulated rig.</p>
       <ul className="border-t border-rule-strong">
         {entries.map((entry) => (
-          <li key={entry.email} className="border-b border-rule py-2.5 flex flex-wrap items-baseline justify-between gap-x-5">
-            <span><span className="font-semibold">{entry.name}</span> <span className="text-small text-soft">{ROLE_WORDS[entry.role]}, {entry.email}</span></span>
+          <li key={entry.email} className="border-b border-rule py-2.5 flex items-baseline justify-between gap-x-5">
+            <span className="min-w-0"><span className="font-semibold">{entry.name}</span> <span className="text-small text-soft">{ROLE_WORDS[entry.role]}<span className="max-sm:hidden">, </span><span className="max-sm:block break-words">{entry.email}</span></span></span>
             <Button tone="quiet" busy={enter.isPending} about={`as ${entry.name}, ${ROLE_WORDS[entry.role]}`} onClick={() => enter.mutate(entry)}>Sign in</Button>
           </li>
         ))}

@@ -1,7 +1,8 @@
 import type { RouteObject } from 'react-router-dom';
 import { page } from '../../lib/page';
 
-export { peopleQuery } from './queries';
+export { AuditTable } from './AuditTable';
+export { latestAuditQuery, peopleQuery } from './queries';
 
 export const peopleRoutes: RouteObject[] = [
   page('people', async () => (await import('./PeoplePage')).PeoplePage),

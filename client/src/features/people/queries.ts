@@ -16,6 +16,11 @@ export const auditQuery = infiniteQueryOptions({
   getNextPageParam: (last) => (last.length < ENTRIES_A_PAGE ? undefined : last.at(-1)?.id),
 });
 
+const LATEST = 6;
+
+/** The newest few entries. */
+export const latestAuditQuery = queryOptions({ queryKey: ['audit', 'latest'], queryFn: async ({ signal }) => (await call(listAudit, { query: { limit: LATEST }, signal })).entries, staleTime: 0 });
+
 export function useInvitePerson() {
   const queries = useQueryClient();
   return useMutation({

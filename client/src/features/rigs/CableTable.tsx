@@ -6,6 +6,9 @@ import { StateWord } from '../../ui/StateWord';
 /** Millimetres of a point, as x, y, z. */
 const point = (metres: readonly number[]) => metres.map((value) => fixed(value * 1000, 1)).join(', ');
 
+/** The rig file's own name of a body, spaced: jawA is jaw A. */
+const bodyWords = (body: string) => body.replace(/([a-z])([A-Z])/g, '$1 $2');
+
 /** Lengths at home and the closure index there; a rig whose home is out of reach has neither. */
 function atHome(file: RigFile) {
   try {
@@ -32,7 +35,7 @@ export function CableTable({ file }: { file: RigFile }) {
           { key: 'cable', head: 'Cable', width: '3.5rem', cell: (row) => <span className="font-semibold">{row.number}</span> },
           { key: 'exit', head: 'Exit, mm in base', cell: (row) => <span className="text-small">{point(row.exit)}</span> },
           { key: 'attach', head: 'Attached, mm in palm', cell: (row) => <span className="text-small">{point(row.attach)}</span> },
-          { key: 'body', head: 'To', width: '4rem', cell: (row) => row.body },
+          { key: 'body', head: 'To', width: '4rem', cell: (row) => bodyWords(row.body) },
           { key: 'length', head: 'At home', width: '5rem', align: 'right', cell: (row) => millimetres(row.lengthM, 0) },
         ]}
       />

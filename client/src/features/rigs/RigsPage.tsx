@@ -32,7 +32,7 @@ export function RigsPage() {
   const button = imports ? <ButtonLink tone="main" to="/rigs/import">Import a rig file</ButtonLink> : null;
   return (
     <Page title="Rigs" lead="Cable-driven device models: geometry, limits, stiffness" actions={rigs.length > 0 ? button : null}>
-      <Section narrow>
+      <Section>
         {rigs.length === 0 ? (
           <Empty title="No rig has been imported yet" action={button}>
             {imports ? 'A rig file says where each cable leaves the frame, where it holds the palm, and what it may carry. Two samples come with Tautbook, under samples/rigs.' : 'An administrator or an experiment lead imports rig files.'}

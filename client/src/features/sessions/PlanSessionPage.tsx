@@ -49,7 +49,7 @@ export function PlanSessionPage() {
     { onSuccess: (session) => navigate(`/sessions/${session.id}`) },
   ));
   return (
-    <Page title="Plan a session" lead={`${study.title}: one visit of one participant on one rig`}>
+    <Page title="Plan a session" lead={`One visit of one participant on one rig · ${study.title}`}>
       <Crumbs steps={[{ to: '/studies', name: 'Studies' }, { to: `/studies/${studyId}`, name: study.title }]} here="Plan a session" />
       {participants.length === 0 ? (
         <Section><Empty title="This study has no participants yet" action={<ButtonLink tone="main" to={`/studies/${studyId}#participants`}>Add a participant</ButtonLink>}>A session is a visit of somebody: add their pseudonymous code first.</Empty></Section>

@@ -25,7 +25,7 @@ const columns: RuledColumn<LogEntry>[] = [
     cell: (entry) => (
       <>
         <span className="font-semibold">{entry.what}</span>
-        <Details detail={entry.detail} omit={['personId']} />
+        <Details detail={entry.detail} omit={['personId', 'deviceId']} />
       </>
     ),
   },

@@ -28,7 +28,7 @@ export function SessionTable({ caption, sessions, withStudy = false }: SessionTa
     { key: 'when', head: 'Planned for', plain: true, width: '11rem', cell: (row) => wallTime(row.plannedAt) },
     { key: 'trials', head: 'Trials recorded', width: '9rem', cell: (row) => `${count(row.trialsRecorded)} of ${count(row.trialsPlanned)}` },
     { key: 'flags', head: 'Flags', width: '5rem', align: 'right', cell: (row) => count(row.flags) },
-    { key: 'state', head: 'State', plain: true, width: '7rem', align: 'right', cell: (row) => <SessionStateWord state={row.state} /> },
+    { key: 'state', head: 'State', plain: true, width: '10rem', align: 'right', cell: (row) => <SessionStateWord state={row.state} /> },
   ];
   return <RuledTable caption={caption} columns={columns} rows={sessions} rowKey={(row) => row.id} />;
 }

@@ -26,7 +26,7 @@ export function LabStudies() {
         rows={studies}
         rowKey={(row) => row.id}
         columns={[
-          { key: 'study', head: 'Study', lead: true, cell: (row) => <><span className="font-semibold">{row.title}</span> <span className="text-small text-soft">{row.code}</span></> },
+          { key: 'study', head: 'Study', lead: true, cell: (row) => <><span className="font-semibold">{row.title}</span><span className="block text-small text-soft">{row.code}</span></> },
           { key: 'state', head: 'State', plain: true, width: '7rem', cell: (row) => <StateWord tone={STUDY_STATES[row.state].tone}>{STUDY_STATES[row.state].word}</StateWord> },
           {
             key: 'member',

@@ -1,10 +1,10 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import { useParams } from 'react-router-dom';
 import { studyId as studyIdSchema } from '@shared/api/common';
+import type { StudyRole } from '@shared/api/common';
 import type { Study } from '@shared/api/studies';
 import { counted, duration, wallDay } from '../../lib/format';
 import { idFromPath } from '../../lib/id-from-path';
-import { STUDY_ROLE_WORDS } from '../../lib/words';
 import { Crumbs } from '../../ui/bar-slots';
 import { ButtonLink } from '../../ui/Button';
 import { Page, Section } from '../../ui/Page';
@@ -19,6 +19,8 @@ import { SessionsPanel } from './SessionsPanel';
 import { STUDY_STATES } from './study-words';
 import { StudyStateMenu } from './StudyStateMenu';
 
+const HERE_AS: Readonly<Record<StudyRole, string>> = { lead: 'its lead', operator: 'an operator of it', clinician: 'a clinician of it', reader: 'a reader of it' };
+
 export function StudyPage() {
   const studyId = idFromPath(studyIdSchema, useParams()['studyId']);
   const study = useSuspenseQuery(studyQuery(studyId)).data;
@@ -27,7 +29,7 @@ export function StudyPage() {
   return (
     <Page
       title={study.title}
-      lead={`${study.code} · started ${wallDay(study.createdAt)} · you are ${STUDY_ROLE_WORDS[study.myRole]}${study.blind ? ', blind to conditions' : ''}`}
+      lead={`${study.code} · started ${wallDay(study.createdAt)} · you are ${HERE_AS[study.myRole]}${study.blind ? ', blind to conditions' : ''}`}
       margin={<StateWord tone={STUDY_STATES[study.state].tone}>{STUDY_STATES[study.state].word}</StateWord>}
       actions={(
         <>

@@ -1,7 +1,8 @@
 import type { RouteObject } from 'react-router-dom';
 import { page } from '../../lib/page';
 
-export { participantsQuery, studiesQuery, studyQuery } from './queries';
+export { STUDY_STATES } from './study-words';
+export { allStudiesQuery, participantsQuery, studiesQuery, studyQuery } from './queries';
 
 export const studyRoutes: RouteObject[] = [
   page('studies', async () => (await import('./StudiesPage')).StudiesPage),

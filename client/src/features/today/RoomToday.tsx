@@ -19,7 +19,7 @@ const whose: RuledColumn<TodayTrial> = {
   key: 'session',
   head: 'Session',
   plain: true,
-  width: '17rem',
+  width: '27rem',
   cell: (row) => (
     <>
       <Link to={`/sessions/${row.session.id}`} className="hover:underline underline-offset-4">{row.session.participantCode}, {visitWords(row.session.visit)}</Link>
@@ -28,7 +28,7 @@ const whose: RuledColumn<TodayTrial> = {
   ),
 };
 const name: RuledColumn<TodayTrial> = { key: 'trial', head: 'Trial', lead: true, cell: (row) => <TrialName trial={row} /> };
-const length: RuledColumn<TodayTrial> = { key: 'length', head: 'Length', plain: true, width: '7rem', align: 'right', blank: (row) => row.durationS === null, cell: (row) => duration(row.durationS ?? Number.NaN) };
+const length: RuledColumn<TodayTrial> = { key: 'length', head: 'Length', plain: true, width: '6rem', align: 'right', blank: (row) => row.durationS === null, cell: (row) => duration(row.durationS ?? Number.NaN) };
 const flags: RuledColumn<TodayTrial> = { key: 'flags', head: 'Flags', width: '5rem', align: 'right', cell: (row) => count(row.flags) };
 const notes: RuledColumn<TodayTrial> = { key: 'notes', head: 'Notes', width: '5rem', align: 'right', cell: (row) => count(row.notes) };
 const state: RuledColumn<TodayTrial> = { key: 'state', head: 'Outcome', plain: true, width: '10rem', align: 'right', cell: (row) => <TrialStateWord trial={row} /> };
@@ -43,7 +43,7 @@ export function RoomToday() {
     key: 'do',
     head: 'To do',
     plain: true,
-    width: '9rem',
+    width: '10rem',
     align: 'right',
     cell: (row) => <Button tone="quiet" about={`of trial ${row.number}, ${row.session.participantCode}`} onClick={() => setJudging(row)}>Give outcome</Button>,
   };
@@ -58,7 +58,7 @@ export function RoomToday() {
       </Section>
       {runs && toJudge.length > 0 ? (
         <Section title="Trials without an outcome" note="recorded, not judged">
-          <RuledTable caption="Trials without an outcome" columns={[name, whose, length, flags, judge]} rows={toJudge} rowKey={(row) => row.id} />
+          <RuledTable caption="Trials without an outcome" columns={[name, whose, length, flags, notes, judge]} rows={toJudge} rowKey={(row) => row.id} />
         </Section>
       ) : null}
       <Section title="Latest recordings" note="to read again">

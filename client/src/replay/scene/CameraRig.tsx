@@ -1,9 +1,9 @@
 /** Moves the camera between its stands and lets the reader turn the scene by hand. */
 import { useThree } from '@react-three/fiber';
 import { useEffect, useEffectEvent, useRef } from 'react';
-import { Fog, Vector3 } from 'three';
+import { Fog, PerspectiveCamera, Vector3 } from 'three';
 import { OrbitControls } from 'three/addons/controls/OrbitControls.js';
-import { handStand, standOf, type CameraName } from './cameras';
+import { handStand, pictureOf, standOf, type CameraName } from './cameras';
 import type { RigStage } from './rig-stage';
 
 export interface CameraRigProps {
@@ -13,6 +13,8 @@ export interface CameraRigProps {
   readonly onFree: () => void;
   /** Subscribes to changes of the palm's pose, for the hand's view. */
   readonly onPose: (listener: () => void) => () => void;
+  /** Words stand over the head of the picture. */
+  readonly headed: boolean;
 }
 
 const MOVE_MS = 320;
@@ -24,8 +26,8 @@ function setFog(fog: unknown, distance: number, radius: number): void {
   fog.far = distance + radius * 2.4;
 }
 
-export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProps) {
-  const { camera, gl, invalidate, size, scene } = useThree();
+export function CameraRig({ stage, camera: name, onFree, onPose, headed }: CameraRigProps) {
+  const { camera, gl, invalidate, size: { width, height }, scene } = useThree();
   const controls = useRef<OrbitControls | null>(null);
   const began = useEffectEvent(() => {
     if (name !== 'free') onFree();
@@ -61,6 +63,15 @@ export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProp
     };
   }, [camera, gl, invalidate, scene, stage]);
 
+  // The middle of what words leave free is the middle of the frame.
+  useEffect(() => {
+    if (!(camera instanceof PerspectiveCamera)) return;
+    const { head, foot } = pictureOf({ width, height }, headed);
+    if (head === foot) camera.clearViewOffset();
+    else camera.setViewOffset(width, height, 0, (foot - head) / 2, width, height);
+    invalidate();
+  }, [camera, invalidate, width, height, headed]);
+
   useEffect(() => {
     const orbit = controls.current;
     if (!orbit) return;
@@ -83,7 +94,7 @@ export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProp
       orbit.update();
       return;
     }
-    const stand = standOf(name, stage.centre, stage.half, size.width / Math.max(1, size.height));
+    const stand = standOf(name, stage.centre, stage.half, pictureOf({ width, height }, headed));
     const from = { position: camera.position.clone(), target: orbit.target.clone() };
     const still = !placed.current || matchMedia('(prefers-reduced-motion: reduce)').matches;
     placed.current = true;
@@ -102,7 +113,7 @@ export function CameraRig({ stage, camera: name, onFree, onPose }: CameraRigProp
     return () => {
       if (frame !== null) cancelAnimationFrame(frame);
     };
-  }, [name, camera, invalidate, onPose, stage, size.width, size.height]);
+  }, [name, camera, invalidate, onPose, stage, width, height, headed]);
 
   return null;
 }

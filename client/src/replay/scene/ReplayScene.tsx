@@ -32,7 +32,7 @@ export function ReplayScene({ file, player, camera, onCamera, label, instead }: 
   useEffect(() => () => stage.dispose(), [stage]);
   return (
     <div className="relative size-full">
-      <SceneCanvas stage={stage} camera={camera} onFree={() => onCamera('free')} onPose={onPose} label={label} instead={instead}>
+      <SceneCanvas stage={stage} camera={camera} onFree={() => onCamera('free')} onPose={onPose} label={label} instead={instead} headed>
         <Drive stage={stage} file={file} player={player} poseListeners={poseListeners} />
       </SceneCanvas>
       <CameraChoice camera={camera} onChange={onCamera} />

@@ -16,10 +16,12 @@ export interface SceneCanvasProps {
   readonly label: string;
   /** Where the same can be read without the picture. */
   readonly instead: string;
+  /** Words stand over the head of the picture. */
+  readonly headed?: boolean;
   readonly children?: ReactNode;
 }
 
-export function SceneCanvas({ stage, camera, onFree, onPose, label, instead, children }: SceneCanvasProps) {
+export function SceneCanvas({ stage, camera, onFree, onPose, label, instead, headed = false, children }: SceneCanvasProps) {
   const [webgl] = useState(webglHere);
   if (webgl === 'none') {
     return (
@@ -32,13 +34,14 @@ export function SceneCanvas({ stage, camera, onFree, onPose, label, instead, chi
     <div role="img" aria-label={label} className="size-full" data-testid="scene">
       <Canvas
         frameloop="demand"
+        flat
         shadows="percentage"
         dpr={webgl === 'software' ? 1 : [1, 2]}
         camera={{ fov: FIELD_OF_VIEW, near: 0.01, far: 20 }}
         gl={{ antialias: true, powerPreference: 'high-performance' }}
       >
         <Stage stage={stage} />
-        <CameraRig stage={stage} camera={camera} onFree={onFree} onPose={onPose} />
+        <CameraRig stage={stage} camera={camera} onFree={onFree} onPose={onPose} headed={headed} />
         {children}
       </Canvas>
     </div>

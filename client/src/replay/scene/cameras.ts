@@ -14,17 +14,30 @@ export interface Stand {
 /** Vertical field of view, degrees: a long lens, so that lengths stay comparable across the frame. */
 export const FIELD_OF_VIEW = 27;
 
-/** Room round the frame for the exits' numbers, m, and the share of the picture's height and width that words leave free. */
+/** Room round the frame for the exits' numbers, m, and the share of the picture's width and free height that it may take. */
 const NUMBERS_M = 0.055;
 const FREE = { across: 0.96, up: 0.93 };
 
+/** A picture, CSS px, and the strips at its head and foot that words take. */
+export interface Picture {
+  readonly width: number;
+  readonly height: number;
+  readonly head: number;
+  readonly foot: number;
+}
+
+/** Below this width words stand over and under the frame; in a wider picture they stand beside it. */
+const NARROW_PX = 640;
+
+export const pictureOf = ({ width, height }: { width: number; height: number }, headed: boolean): Picture =>
+  (width < NARROW_PX ? { width, height, head: headed ? 72 : 0, foot: 34 } : { width, height, head: 0, foot: 0 });
+
 /**
- * As near as the whole frame stays in the picture.
+ * As near as the whole frame stays in the picture and clear of its words.
  *
- * @param half   half the frame's size along x, y, z, m
- * @param aspect width over height of the picture
+ * @param half half the frame's size along x, y, z, m
  */
-export function standOf(name: Exclude<CameraName, 'hand'>, centre: Vector3, half: Vector3, aspect: number): Stand {
+export function standOf(name: Exclude<CameraName, 'hand'>, centre: Vector3, half: Vector3, { width, height, head, foot }: Picture): Stand {
   const from: Record<Exclude<CameraName, 'hand'>, Vector3> = {
     free: new Vector3(0.52, -1, 0.42),
     front: new Vector3(0, -1, 0.06),
@@ -36,10 +49,12 @@ export function standOf(name: Exclude<CameraName, 'hand'>, centre: Vector3, half
   const up = toCamera.clone().cross(right);
   const tangent = Math.tan((FIELD_OF_VIEW / 2) * (Math.PI / 180));
   const corner = new Vector3();
+  const aspect = width / Math.max(1, height);
+  const freeUp = (FREE.up * Math.max(1, height - head - foot)) / Math.max(1, height);
   let distance = 0;
   for (let i = 0; i < 8; i += 1) {
     corner.set(i & 1 ? 1 : -1, i & 2 ? 1 : -1, i & 4 ? 1 : -1).multiply(half).addScaledVector(corner.clone().normalize(), NUMBERS_M);
-    const aside = Math.max(Math.abs(corner.dot(right)) / (tangent * aspect * FREE.across), Math.abs(corner.dot(up)) / (tangent * FREE.up));
+    const aside = Math.max(Math.abs(corner.dot(right)) / (tangent * aspect * FREE.across), Math.abs(corner.dot(up)) / (tangent * freeUp));
     distance = Math.max(distance, corner.dot(toCamera) + aside);
   }
   return { position: toCamera.multiplyScalar(distance).add(centre), target: centre.clone() };

@@ -1,5 +1,5 @@
 /** A small number that always faces the reader and keeps its size: cable numbers at the exits. */
-import { CanvasTexture, LinearFilter, Sprite, SpriteMaterial } from 'three';
+import { CanvasTexture, LinearFilter, Sprite, SpriteMaterial, SRGBColorSpace } from 'three';
 import { font } from '../stave/page-font';
 
 export interface NumberLabel {
@@ -15,6 +15,7 @@ export function makeNumberLabel(text: string): NumberLabel {
   canvas.width = SIDE;
   canvas.height = SIDE;
   const texture = new CanvasTexture(canvas);
+  texture.colorSpace = SRGBColorSpace;
   texture.minFilter = LinearFilter;
   texture.generateMipmaps = false;
   const material = new SpriteMaterial({ map: texture, transparent: true, depthTest: false, sizeAttenuation: false, fog: false });
