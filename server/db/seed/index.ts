@@ -11,7 +11,7 @@ import { StartRefusal } from '../../start-refusal';
 import type { OpenDatabase } from '../engine';
 import { cast, demoPassword } from './cast';
 import { makeDemoLab, rigPath } from './make-lab';
-import { anybodyThere, findDemoTrace, writeDemoTrace } from './queries';
+import { anybodyThere, dateFurniture, findDemoTrace, writeDemoTrace } from './queries';
 
 export interface DemoDevice {
   name: string;
@@ -49,6 +49,7 @@ export async function seedDemoLab(open: OpenDatabase, { log, onProgress = () => 
     onProgress('Making the demo lab, once. This takes a little while…');
     trace = await open.db.transaction(async (tx) => {
       const made = await makeDemoLab(tx, nowMs, log, onProgress);
+      await dateFurniture(tx, nowMs);
       await writeDemoTrace(tx, made);
       return made;
     });
