@@ -11,6 +11,7 @@ import { labRoutes } from './features/lab';
 import { noteRoutes } from './features/notes';
 import { peopleRoutes } from './features/people';
 import { recordingRoutes } from './features/recordings';
+import { reviewRoutes } from './features/review';
 import { rigRoutes } from './features/rigs';
 import { sessionRoutes } from './features/sessions';
 import { signInRoutes } from './features/sign-in';
@@ -83,6 +84,7 @@ function routes({ db, services, checkResponses }: ApiOptions, gate: Gate): Route
   deviceRoutes(router, services.devices);
   studyRoutes(router, services.studies);
   sessionRoutes(router, services.sessions, services.sessionReader, gate);
+  reviewRoutes(router, services.review);
   recordingRoutes(router, services.recordings, services.imports);
   flagRoutes(router, services.flags);
   noteRoutes(router, services.notes);

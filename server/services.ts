@@ -9,6 +9,7 @@ import { createLabService, type LabService } from './features/lab';
 import { createNoteService, type NoteService } from './features/notes';
 import { createPeopleService, type DemoSignIn, type PeopleService } from './features/people';
 import { createImportService, createRecordingService, type ImportService, type RecordingService } from './features/recordings';
+import { createReviewService, type ReviewService } from './features/review';
 import { createRigService, type RigService } from './features/rigs';
 import { createSessionReader, createSessionService, type SessionReader, type SessionService } from './features/sessions';
 import { createStudyService, type StudyService } from './features/studies';
@@ -29,6 +30,7 @@ export interface Services {
   recordings: RecordingService;
   imports: ImportService;
   notes: NoteService;
+  review: ReviewService;
   flags: FlagService;
 }
 
@@ -72,5 +74,6 @@ export async function createServices({ db, bus, control, log, config, publicUrl,
     imports: createImportService({ db, sessions, now }),
     notes: createNoteService(db, bus, now),
     flags: createFlagService(db),
+    review: createReviewService({ db, bus, now }),
   };
 }

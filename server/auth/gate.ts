@@ -16,7 +16,7 @@ export interface Gate {
 }
 
 const paramOf: Record<Via, string> = { studyId: 'studyId', sessionId: 'sessionId', trialId: 'trialId', recordingId: 'recordingId', noteId: 'noteId' };
-const roomVia: Record<string, Via | undefined> = { session: 'sessionId', trial: 'trialId' };
+const roomVia: Record<string, Via | undefined> = { study: 'studyId', session: 'sessionId', trial: 'trialId' };
 
 /** Things inside a study's sessions, as opposed to the study itself. */
 const isInsideSession = (via: Via) => via !== 'studyId';

@@ -84,6 +84,9 @@ export const guards: Record<RouteId, Guard> = {
   'trials.judge': onTrial('lead', 'operator'),
   'trials.remove': onTrial('lead'),
 
+  'moments.list': onStudy('lead', 'operator', 'reader'),
+  'verdicts.list': onTrial('lead', 'operator', 'reader'),
+  'verdicts.give': onStudy('lead'),
   'flags.list': onTrial('lead', 'operator', 'clinician', 'reader'),
   'recordings.window': onRecording('lead', 'operator', 'clinician', 'reader'),
   'recordings.csv': onTrial('lead'),
@@ -111,5 +114,6 @@ export const may = {
   run: (role: StudyRole) => role === 'lead' || role === 'operator',
   remove: (role: StudyRole) => role === 'lead',
   export: (role: StudyRole) => role === 'lead',
+  judge: (role: StudyRole) => role === 'lead',
   seeDevices: (role: LabRole) => role !== 'clinician',
 };

@@ -5,7 +5,7 @@
  * arrived, shared and not to be changed.
  */
 import { EventEmitter } from 'node:events';
-import type { DeviceId, NoteId, RecordingId, SessionId, TrialId } from '@shared/api/common';
+import type { DeviceId, NoteId, RecordingId, SessionId, StudyId, TrialId } from '@shared/api/common';
 import type { TrialState } from '@shared/api/sessions';
 import type { Flag } from '@shared/flags';
 import type { Chunk } from '@shared/recording';
@@ -25,6 +25,8 @@ export interface BusEvents {
   recordingClosed: { recordingId: RecordingId; trialId: TrialId | null };
   flagsFound: { recordingId: RecordingId; trialId: TrialId };
   note: { trialId: TrialId; noteId: NoteId };
+  /** Somebody judged flags of this trial. */
+  verdicts: { studyId: StudyId; trialId: TrialId };
 }
 
 export type BusEvent = keyof BusEvents;

@@ -52,6 +52,9 @@ export class Rooms {
       }),
       bus.on('session', ({ sessionId }) => this.tell(`session:${sessionId}`, { type: 'session', room: `session:${sessionId}`, sessionId })),
       bus.on('flagsFound', ({ trialId }) => this.tellTrial(trialId, (room) => ({ type: 'found', room, trialId }))),
+      bus.on('verdicts', ({ studyId, trialId }) => {
+        for (const room of [`study:${studyId}`, `trial:${trialId}`]) this.tell(room, { type: 'verdicts', room, trialId });
+      }),
       bus.on('device', ({ deviceId, state }) => this.tell('devices', { type: 'device', room: 'devices', deviceId, state })),
       bus.on('note', ({ trialId, noteId }) => void this.note(`trial:${trialId}`, noteId)),
     );

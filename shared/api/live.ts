@@ -10,8 +10,8 @@ import { flag, trialState } from './sessions';
 import { note } from './notes';
 import { deviceId, personRef, sessionId, trialId } from './common';
 
-/** `session:<id>` shows what a session is doing now; `trial:<id>` is the reading room of a trial; `devices` is the lab's devices. */
-export const roomName = z.string().regex(/^(session:[0-9a-f-]{36}|trial:[0-9a-f-]{36}|devices)$/);
+/** `study:<id>` is the worklist of a study’s flags; `session:<id>` shows what a session is doing now; `trial:<id>` is the reading room of a trial; `devices` is the lab's devices. */
+export const roomName = z.string().regex(/^(study:[0-9a-f-]{36}|session:[0-9a-f-]{36}|trial:[0-9a-f-]{36}|devices)$/);
 
 export const liveFromClient = z.discriminatedUnion('type', [
   z.object({ type: z.literal('join'), room: roomName }),
@@ -35,6 +35,8 @@ export const liveFromServer = z.discriminatedUnion('type', [
   z.object({ type: z.literal('flags'), room: roomName, trialId, flags: z.array(liveFlag) }),
   /** Flags of a closed recording are now in the book: ask for them again. */
   z.object({ type: z.literal('found'), room: roomName, trialId }),
+  /** Flags of this trial were judged: ask for the verdicts again. */
+  z.object({ type: z.literal('verdicts'), room: roomName, trialId }),
   z.object({ type: z.literal('mark'), room: roomName, trialId, atS: z.number(), label: z.string() }),
   z.object({ type: z.literal('device'), room: roomName, deviceId, state: z.enum(['connected', 'recording', 'gone']) }),
   z.object({ type: z.literal('session'), room: roomName, sessionId }),

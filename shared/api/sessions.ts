@@ -85,7 +85,7 @@ export const trial = trialSummary.extend({
   /** Neighbours in the session, for leafing. */
   previous: trialId.nullable(),
   next: trialId.nullable(),
-  may: z.object({ note: z.boolean(), run: z.boolean(), remove: z.boolean(), export: z.boolean() }),
+  may: z.object({ note: z.boolean(), run: z.boolean(), remove: z.boolean(), export: z.boolean(), judge: z.boolean() }),
 });
 export type Trial = z.infer<typeof trial>;
 

@@ -4,5 +4,6 @@ export * from './studies';
 export * from './sessions';
 export * from './recordings';
 export * from './flags';
+export * from './review';
 export * from './notes';
 export * from './lab';

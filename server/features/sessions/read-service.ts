@@ -73,7 +73,7 @@ export function createSessionReader(db: Database, now: () => Date) {
         recording: recording && toRecordingMeta(recording),
         previous: neighbour(-1),
         next: neighbour(1),
-        may: { note: may.note(membership.role), run: isOpen && may.run(membership.role), remove: isOpen && may.remove(membership.role), export: may.export(membership.role) },
+        may: { note: may.note(membership.role), run: isOpen && may.run(membership.role), remove: isOpen && may.remove(membership.role), export: may.export(membership.role), judge: may.judge(membership.role) },
       };
     },
 

@@ -1,0 +1,2 @@
+export { reviewRoutes } from './routes';
+export { createReviewService, type ReviewService } from './service';
