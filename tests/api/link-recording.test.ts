@@ -2,13 +2,11 @@
 import { createHash } from 'node:crypto';
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
 import { eq } from 'drizzle-orm';
-import { trialId, type DeviceId } from '@shared/api/common';
+import type { DeviceId } from '@shared/api/common';
 import { type Chunk, recordingSummer, sampleHasher } from '@shared/recording';
 import { devices, recordingChunks, recordingPyramid, recordingTail } from '@server/db/schema';
 import { openLinkLab, type LinkLab } from '../support/link-lab';
 import { deviceNowUs, dtBlock, heronChannels, hello, LinkClient, START_US, testBatch, valueAt } from '../support/link-client';
-
-const trial = trialId.parse('0190d3f2-6a5e-7c11-9a44-1f0e5d2c8b77');
 
 let lab: LinkLab;
 const clients: LinkClient[] = [];
@@ -25,11 +23,10 @@ async function greeted(key: string, more: Parameters<typeof hello>[0] = {}): Pro
   return client;
 }
 
-async function begun(run: string, ofTrial: string | null = null): Promise<{ device: { id: DeviceId; key: string }; client: LinkClient }> {
+async function begun(run: string): Promise<{ device: { id: DeviceId; key: string }; client: LinkClient }> {
   const device = await lab.device();
-  if (ofTrial !== null) lab.armed.set(device.id, trial);
   const client = await greeted(device.key);
-  client.send({ type: 'begin', trial: ofTrial, run, startUs: START_US });
+  client.send({ type: 'begin', trial: null, run, startUs: START_US });
   await client.next('ack', (ack) => ack.run === run);
   return { device, client };
 }
@@ -252,7 +249,7 @@ describe('after a break', () => {
 describe('a trial', () => {
   it('is armed, begun, away, back and stopped as its device goes', async () => {
     const device = await lab.device();
-    lab.armed.set(device.id, trial);
+    const trial = await lab.armedTrial(device.id);
     const client = await greeted(device.key);
     expect(await client.next('arm')).toMatchObject({ trial });
     client.send({ type: 'begin', trial, run: 't', startUs: START_US });
@@ -277,7 +274,10 @@ describe('a trial', () => {
   it('reaches the rooms sample by sample, with its marks', async () => {
     const heard: { samples: number; marks: string[] } = { samples: 0, marks: [] };
     const off = [lab.bus.on('samples', ({ chunk }) => { heard.samples += chunk.count; }), lab.bus.on('mark', ({ label }) => heard.marks.push(label))];
-    const { client } = await begun('rooms', trial);
+    const device = await lab.device();
+    const trial = await lab.armedTrial(device.id);
+    const client = await greeted(device.key);
+    client.send({ type: 'begin', trial, run: 'rooms', startUs: START_US });
     await stream(client, 'rooms', 0, 5);
     client.send({ type: 'mark', run: 'rooms', atUs: START_US + 1000, label: 'now' });
     await ended(client, 'rooms', 5, 100);

@@ -1,7 +1,6 @@
 /** Every way in which the device link says no, through a real socket: the right code, nothing lost, counted on the device. */
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { eq } from 'drizzle-orm';
-import { trialId } from '@shared/api/common';
 import { faultKinds, float32Block, pack, type FaultCode } from '@shared/link';
 import { devices } from '@server/db/schema';
 import { openLinkLab, type LinkLab } from '../support/link-lab';
@@ -239,7 +238,7 @@ describe('a running run', () => {
     const client = await LinkClient.greeted(lab.url, device.key);
     client.send({ type: 'begin', trial: 'no trial', run: 'a', startUs: START_US });
     expect(await client.next('fault')).toMatchObject({ code: 'TRIAL_UNKNOWN', run: 'a', fatal: false });
-    client.send({ type: 'begin', trial: trialId.parse('0190d3f2-6a5e-7c11-9a44-1f0e5d2c8b77'), run: 'a', startUs: START_US });
+    client.send({ type: 'begin', trial: await lab.armedTrial((await lab.device()).id), run: 'a', startUs: START_US });
     expect(await client.next('fault', ({ code }) => code === 'TRIAL_NOT_ARMED')).toMatchObject({ run: 'a', fatal: false });
     client.send({ type: 'begin', trial: null, run: 'a', startUs: START_US });
     await client.next('ack', (ack) => ack.run === 'a');

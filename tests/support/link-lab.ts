@@ -6,12 +6,12 @@ import type { AddressInfo } from 'node:net';
 import { fileURLToPath } from 'node:url';
 import pino from 'pino';
 import { and, eq } from 'drizzle-orm';
-import { deviceId, type DeviceId, type TrialId } from '@shared/api/common';
+import { deviceId, trialId, type DeviceId, type TrialId } from '@shared/api/common';
 import type { LinkOptions } from '@shared/link';
 import type { Chunk } from '@shared/recording';
 import type { RigFile } from '@shared/rig';
 import type { Database, OpenDatabase } from '@server/db/engine';
-import { devices, recordings, rigRevisions, rigs } from '@server/db/schema';
+import { conditions, devices, participants, recordings, rigRevisions, rigs, sessions, studies, tasks, trials } from '@server/db/schema';
 import { createDeviceLink, type DeviceLink, readChunks, type TrialBook } from '@server/ingest';
 import { type Bus, createBus } from '@server/live/bus';
 import { testDatabase } from './database';
@@ -33,6 +33,8 @@ export interface LinkLab {
   url: string;
   /** A new device of heron-8. */
   device(): Promise<{ id: DeviceId; key: string }>;
+  /** A new trial of heron-8, armed on the device. */
+  armedTrial(device: DeviceId): Promise<TrialId>;
   /** Stops the link and starts another one on the same database, as a restart does. */
   restart(): Promise<void>;
   recording(device: DeviceId, run: string): Promise<typeof recordings.$inferSelect>;
@@ -59,16 +61,40 @@ export async function plantDevice(db: Database, rigId: string): Promise<{ id: De
   return { id: deviceId.parse(row.id), key };
 }
 
+/** A study with one open session on heron-8. @returns what makes its next trial */
+export async function plantSession(db: Database): Promise<() => Promise<TrialId>> {
+  const only = async <Row>(rows: Promise<Row[]>): Promise<Row> => {
+    const [row] = await rows;
+    if (!row) throw new Error('not written');
+    return row;
+  };
+  const study = await only(db.insert(studies).values({ code: 'BENCH', title: 'Bench', state: 'running' }).returning());
+  const of = { studyId: study.id, place: 1 };
+  const condition = await only(db.insert(conditions).values({ ...of, blindCode: 'A', label: 'as it is' }).returning());
+  const task = await only(db.insert(tasks).values({ ...of, code: 'place', title: 'Pick and place' }).returning());
+  const participant = await only(db.insert(participants).values({ studyId: study.id, code: 'K-001' }).returning());
+  const revision = await only(db.select().from(rigRevisions).where(eq(rigRevisions.digest, 'heron-8')));
+  const session = await only(db.insert(sessions).values({ studyId: study.id, participantId: participant.id, rigRevisionId: revision.id, visit: 1, state: 'open', plannedAt: new Date() }).returning());
+  let number = 0;
+  return async () => {
+    number += 1;
+    const trial = await only(db.insert(trials).values({ sessionId: session.id, number, taskId: task.id, conditionId: condition.id, state: 'armed' }).returning());
+    return trialId.parse(trial.id);
+  };
+}
+
 /** @param around wraps the database that the link gets, to make it fail */
 export async function openLinkLab(options: Partial<LinkOptions> = {}, around: (db: Database) => Database = (db) => db): Promise<LinkLab> {
   const open = await testDatabase();
   const { db } = open;
   const rigId = await plantRigs(db);
+  const plantTrial = await plantSession(db);
+  const known = new Set<string>();
   const told: Told[] = [];
   const armed = new Map<DeviceId, TrialId>();
   const bus = createBus((error) => { throw error; });
   const book: TrialBook = {
-    mayBegin: async (device, trial) => (armed.get(device) === trial ? 'yes' : trial.startsWith('0190d3f2') ? 'not-armed' : 'unknown'),
+    mayBegin: async (device, trial) => (armed.get(device) === trial ? 'yes' : known.has(trial) ? 'not-armed' : 'unknown'),
     armedOn: async (device) => armed.get(device) ?? null,
     began: async (trial) => { told.push({ what: 'began', trial }); },
     away: async (trial) => { told.push({ what: 'away', trial }); },
@@ -82,6 +108,12 @@ export async function openLinkLab(options: Partial<LinkOptions> = {}, around: (d
     link: await start(),
     url: '',
     device: () => plantDevice(db, rigId),
+    async armedTrial(device) {
+      const trial = await plantTrial();
+      known.add(trial);
+      armed.set(device, trial);
+      return trial;
+    },
     async restart() {
       await lab.link.close();
       lab.link = await start();
