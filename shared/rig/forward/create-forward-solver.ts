@@ -1,7 +1,7 @@
 import type { RigModel } from '../rig-model';
 import { addLengthCurvature } from './add-length-curvature';
-import { lengthEquations } from './length-equations';
-import { solveCholesky7 } from './solve-cholesky7';
+import { createLengthEquations, lengthEquations } from './length-equations';
+import { DAMPING, FLOOR, PIVOT, solveCholesky7 } from './solve-cholesky7';
 
 /**
  * How a solution ended: `solved`; `singular`, when some motion leaves all lengths unchanged; `unsettled`, when the
@@ -45,26 +45,88 @@ const ROUNDING = 4e-16;
  *         in `addLengthCurvature`
  */
 export function createForwardSolver(rig: RigModel): ForwardSolver {
-  const equations = { M: new Float64Array(28), h: new Float64Array(7) };
-  const { M, h: step } = equations;
+  const equations = createLengthEquations(rig.cableCount);
+  const { M, h: step, sum: squares } = equations;
   const here = new Float64Array(8);
   const before = new Float64Array(8);
+  const terms = new Float64Array(3);
+  const stepSize = new Float64Array(1);
+  const residual = new Float64Array(1).fill(Number.NaN);
+  // m^2: sum of squares at the last good pose, and the most that the next one may have.
+  const sum = new Float64Array(1);
+  const most = new Float64Array(1);
   // m: what rounding makes of the root of the sum of squares; sums closer than that are equal.
   const noise = ROUNDING * Math.sqrt(rig.cableCount) * Math.max(...rig.exits.map(Math.abs));
   let status: ForwardStatus = 'missing';
-  let residualRms = Number.NaN;
   let iterations = 0;
 
-  function end(how: ForwardStatus, sum: number): boolean {
-    status = how;
-    residualRms = how === 'missing' ? Number.NaN : Math.sqrt(sum / rig.cableCount);
-    return how === 'solved';
+  /** One step from `here`, Newton's or Gauss-Newton's, into `step`; false when no damping makes the matrix definite. */
+  function findStep(lengths: ArrayLike<number>, offset: number): boolean {
+    if (iterations >= GAUSS_NEWTON_STEPS) {
+      const damping = terms[DAMPING]!;
+      terms[DAMPING] = 0;
+      addLengthCurvature(rig, here, lengths, offset, M);
+      const solved = solveCholesky7(M, step, terms);
+      terms[DAMPING] = damping;
+      if (solved) return true;
+      // Not a valley here: the way down is Gauss-Newton's.
+      lengthEquations(rig, here, lengths, offset, equations);
+    }
+    setFloor(M, terms);
+    while (!solveCholesky7(M, step, terms)) {
+      if (!dampMore()) return false;
+    }
+    return true;
+  }
+
+  function dampMore(): boolean {
+    terms[DAMPING] = Math.max(FIRST_DAMPING, terms[DAMPING]! * MORE_DAMPING);
+    return terms[DAMPING]! <= MOST_DAMPING;
   }
 
   /** True when the lengths leave some motion from `here` free. */
   function isFlat(lengths: ArrayLike<number>, offset: number): boolean {
     lengthEquations(rig, here, lengths, offset, equations);
-    return solveCholesky7(M, step, 0, 0) === 0;
+    terms[DAMPING] = 0;
+    return !solveCholesky7(M, step, terms);
+  }
+
+  /** Shorter steps from `before` until one leaves no more than `most`; false when none does. */
+  function retreat(lengths: ArrayLike<number>, offset: number): boolean {
+    while (!(squares[0]! <= most[0]!)) {
+      if (!dampMore() || iterations >= ITERATIONS) return false;
+      copy(before, here);
+      lengthEquations(rig, here, lengths, offset, equations);
+      setFloor(M, terms);
+      if (solveCholesky7(M, step, terms)) move(here, step, stepSize);
+      iterations++;
+      lengthEquations(rig, here, lengths, offset, equations);
+    }
+    return true;
+  }
+
+  function iterate(lengths: ArrayLike<number>, offset: number, pose: Float64Array): ForwardStatus {
+    lengthEquations(rig, here, lengths, offset, equations);
+    sum[0] = squares[0]!;
+    if (!(sum[0]! < Infinity)) return 'missing';
+    for (;;) {
+      if (!findStep(lengths, offset)) return 'singular';
+      copy(here, before);
+      move(here, step, stepSize);
+      iterations++;
+      // Near a singular pose rounding alone makes steps of this size.
+      if (stepSize[0]! <= Math.max(STEP_TOLERANCE, 4e-16 / terms[PIVOT]!)) {
+        if (terms[DAMPING]! > 0 && isFlat(lengths, offset)) return 'singular';
+        copy(here, pose);
+        return 'solved';
+      }
+      if (iterations >= ITERATIONS) return 'unsettled';
+      lengthEquations(rig, here, lengths, offset, equations);
+      most[0] = sum[0]! + noise * (2 * Math.sqrt(sum[0]!) + noise);
+      if (!retreat(lengths, offset)) return 'unsettled';
+      sum[0] = squares[0]!;
+      terms[DAMPING] = terms[DAMPING]! < FIRST_DAMPING ? 0 : terms[DAMPING]! * LESS_DAMPING;
+    }
   }
 
   return {
@@ -72,7 +134,7 @@ export function createForwardSolver(rig: RigModel): ForwardSolver {
       return status;
     },
     get residualRms() {
-      return residualRms;
+      return residual[0]!;
     },
     get iterations() {
       return iterations;
@@ -81,60 +143,25 @@ export function createForwardSolver(rig: RigModel): ForwardSolver {
       copy(pose, here);
       normalise(here);
       iterations = 0;
-      let damping = 0;
-      let sum = lengthEquations(rig, here, lengths, offset, equations);
-      if (!(sum < Infinity)) return end('missing', sum);
-      for (;;) {
-        let pivot = 0;
-        if (iterations >= GAUSS_NEWTON_STEPS) {
-          addLengthCurvature(rig, here, lengths, offset, M);
-          pivot = solveCholesky7(M, step, 0, 0);
-          // Not a valley here: the way down is Gauss-Newton's.
-          if (pivot === 0) lengthEquations(rig, here, lengths, offset, equations);
-        }
-        while (pivot === 0) {
-          pivot = solveCholesky7(M, step, damping, floorOf(M));
-          if (pivot === 0) damping = Math.max(FIRST_DAMPING, damping * MORE_DAMPING);
-          if (damping > MOST_DAMPING) return end('singular', sum);
-        }
-        copy(here, before);
-        const size = move(here, step);
-        iterations++;
-        // Near a singular pose rounding alone makes steps of this size.
-        if (size <= Math.max(STEP_TOLERANCE, 4e-16 / pivot)) {
-          if (damping > 0 && isFlat(lengths, offset)) return end('singular', sum);
-          copy(here, pose);
-          return end('solved', sum);
-        }
-        if (iterations >= ITERATIONS) return end('unsettled', sum);
-        let next = lengthEquations(rig, here, lengths, offset, equations);
-        while (!(next <= sum + noise * (2 * Math.sqrt(sum) + noise))) {
-          damping = Math.max(FIRST_DAMPING, damping * MORE_DAMPING);
-          if (damping > MOST_DAMPING || iterations >= ITERATIONS) return end('unsettled', sum);
-          copy(before, here);
-          lengthEquations(rig, here, lengths, offset, equations);
-          if (solveCholesky7(M, step, damping, floorOf(M)) > 0) move(here, step);
-          iterations++;
-          next = lengthEquations(rig, here, lengths, offset, equations);
-        }
-        sum = next;
-        damping = damping < FIRST_DAMPING ? 0 : damping * LESS_DAMPING;
-      }
+      terms[DAMPING] = 0;
+      status = iterate(lengths, offset, pose);
+      residual[0] = status === 'missing' ? Number.NaN : Math.sqrt(sum[0]! / rig.cableCount);
+      return status === 'solved';
     },
   };
 }
 
 /** What damping adds to every diagonal entry, so that a motion without any stiffness is damped too. */
-function floorOf(M: Float64Array): number {
-  return 1e-3 * Math.max(M[0]!, M[2]!, M[5]!);
+function setFloor(M: Float64Array, terms: Float64Array): void {
+  terms[FLOOR] = 1e-3 * Math.max(M[0]!, M[2]!, M[5]!);
 }
 
 function copy(from: Float64Array, to: Float64Array): void {
   for (let i = 0; i < 8; i++) to[i] = from[i]!;
 }
 
-/** Moves a pose by a step (p, rotation vector in base axes, grasp); returns its largest entry. */
-function move(pose: Float64Array, step: Float64Array): number {
+/** Moves a pose by a step (p, rotation vector in base axes, grasp); writes its largest entry into `size`. */
+function move(pose: Float64Array, step: Float64Array, size: Float64Array): void {
   const wx = step[3]!, wy = step[4]!, wz = step[5]!;
   pose[0] = pose[0]! + step[0]!;
   pose[1] = pose[1]! + step[1]!;
@@ -151,7 +178,7 @@ function move(pose: Float64Array, step: Float64Array): number {
   pose[5] = c * z + ex * y - ey * x + ez * w;
   pose[6] = c * w - ex * x - ey * y - ez * z;
   normalise(pose);
-  return Math.max(
+  size[0] = Math.max(
     Math.abs(step[0]!), Math.abs(step[1]!), Math.abs(step[2]!), Math.abs(wx), Math.abs(wy), Math.abs(wz), Math.abs(step[6]!),
   );
 }
