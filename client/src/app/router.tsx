@@ -10,6 +10,7 @@ import { runRoutes } from '../features/run';
 import { sessionRoutes } from '../features/sessions';
 import { studyRoutes } from '../features/studies';
 import { todayRoutes } from '../features/today';
+import { triageRoutes } from '../features/triage';
 import { trialRoutes } from '../features/trial';
 import { asProblem } from '../lib/api-problem';
 import { entranceQuery, meQuery } from '../lib/me';
@@ -52,6 +53,7 @@ export function createPages(queries: QueryClient) {
             ...studyRoutes,
             ...sessionRoutes,
             ...runRoutes,
+            ...triageRoutes,
             ...trialRoutes,
             ...rigRoutes,
             ...deviceRoutes,

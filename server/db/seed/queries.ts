@@ -1,7 +1,7 @@
 /** What the seed keeps for itself: that it was here, and the demo device's key, which no page ever shows again. */
-import { eq, isNotNull } from 'drizzle-orm';
+import { eq, isNotNull, max } from 'drizzle-orm';
 import type { Database } from '../engine';
-import { devices, members, participants, people, rigRevisions, rigs, settings, studies } from '../schema';
+import { devices, members, participants, people, recordings, rigRevisions, rigs, settings, studies } from '../schema';
 
 const key = 'demo-lab';
 
@@ -31,6 +31,8 @@ export async function dateFurniture(db: Database, nowMs: number): Promise<void> 
   await db.update(rigRevisions).set({ importedAt: daysAgo(11) }).where(eq(rigRevisions.revision, 2));
   await db.update(devices).set({ createdAt: daysAgo(36) });
   await db.update(devices).set({ revokedAt: daysAgo(24) }).where(isNotNull(devices.revokedAt));
+  const lastRecorded = await db.select({ deviceId: recordings.deviceId, at: max(recordings.closedAt) }).from(recordings).groupBy(recordings.deviceId);
+  for (const { deviceId, at } of lastRecorded) if (deviceId !== null) await db.update(devices).set({ lastSeenAt: at }).where(eq(devices.id, deviceId));
   await db.update(studies).set({ createdAt: daysAgo(30) });
   await db.update(members).set({ since: daysAgo(30) });
   await db.update(participants).set({ createdAt: daysAgo(28) });

@@ -64,7 +64,8 @@ export function DevicesPage() {
       head: 'Its clock known to',
       width: '14rem',
       // The offset itself says nothing: a device counts from when it was switched on.
-      cell: (row) => (row.clock === null ? <span className="text-soft">not measured</span> : <>± {microseconds(row.clock.uncertaintyUs)}</>),
+      blank: (row) => row.clock === null,
+      cell: (row) => <>± {microseconds(row.clock?.uncertaintyUs ?? Number.NaN)}</>,
     },
     { key: 'faults', head: 'Faults answered', width: '12rem', cell: (row) => <FaultCounts faults={row.faults} /> },
     ...(keeps ? [{

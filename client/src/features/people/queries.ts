@@ -4,7 +4,8 @@ import type { BodyInput } from '@shared/api/contract';
 import { changePerson, invitePerson, listAudit, listPeople } from '@shared/api/people';
 import { call } from '../../lib/api';
 
-export const peopleQuery = queryOptions({ queryKey: ['people'], queryFn: async ({ signal }) => (await call(listPeople, { signal })).people });
+/** Asked again at every turn to the page: people accept invitations and set passwords elsewhere. */
+export const peopleQuery = queryOptions({ queryKey: ['people'], queryFn: async ({ signal }) => (await call(listPeople, { signal })).people, staleTime: 0 });
 
 const ENTRIES_A_PAGE = 100;
 

@@ -34,6 +34,7 @@ export function StudyPage() {
       actions={(
         <>
           {plans ? <ButtonLink tone="main" to={`/studies/${studyId}/sessions/new`}>Plan a session</ButtonLink> : null}
+          {study.myRole === 'clinician' ? null : <ButtonLink to={`/studies/${studyId}/moments`}>Moments</ButtonLink>}
           {leads ? <StudyStateMenu study={study} /> : null}
         </>
       )}

@@ -17,8 +17,8 @@ export function ClinicianToday() {
         </Empty>
       </Section>
       {studies.length === 0 ? null : (
-        <Section narrow title="Your studies" note="protocol, conditions, members">
-          <ul className="border-t border-rule-strong">
+        <Section title="Your studies" note="protocol, conditions, members">
+          <ul className="border-t border-rule-strong max-w-[46rem]">
             {studies.map((study) => (
               <li key={study.id} className="border-b border-rule py-3 flex justify-between gap-x-5">
                 <Link to={`/studies/${study.id}`} className="font-semibold hover:underline underline-offset-4">{study.title}</Link>
