@@ -17,7 +17,8 @@ const LINE = 'w-full bg-sheet text-ink border-0 border-b border-rule-field px-2.
 function useTied({ help, error, id }: { help?: ReactNode; error?: string | undefined; id?: string | undefined }) {
   const made = useId();
   const control = id ?? made;
-  const describedBy = [help ? `${control}-help` : '', error ? `${control}-error` : ''].filter(Boolean).join(' ');
+  // What is wrong takes the place of the help, which it would say again.
+  const describedBy = error ? `${control}-error` : help ? `${control}-help` : '';
   return { control, aria: { id: control, 'aria-describedby': describedBy || undefined, 'aria-invalid': error ? true : undefined } };
 }
 
@@ -26,7 +27,7 @@ function Frame({ control, label, help, error, labelHidden = false, children, cla
     <div className={classNames('grid content-start gap-1', className)}>
       <label htmlFor={control} className={labelHidden ? 'sr-only' : 'text-small font-semibold'}>{label}</label>
       {children}
-      {help ? <p id={`${control}-help`} className="text-small text-soft">{help}</p> : null}
+      {help && !error ? <p id={`${control}-help`} className="text-small text-soft">{help}</p> : null}
       {error ? <p id={`${control}-error`} className="text-small font-semibold text-attention-text">{error}</p> : null}
     </div>
   );
@@ -65,7 +66,7 @@ export function CheckField({ label, help, error, className, id, ...rest }: Compo
     <div className={classNames('grid grid-cols-[auto_1fr] gap-x-2.5', className)}>
       <input {...rest} {...aria} type="checkbox" className="size-4.5 mt-0.5 accent-ink" />
       <label htmlFor={control} className="text-body">{label}</label>
-      {help ? <p id={`${control}-help`} className="col-start-2 text-small text-soft">{help}</p> : null}
+      {help && !error ? <p id={`${control}-help`} className="col-start-2 text-small text-soft">{help}</p> : null}
       {error ? <p id={`${control}-error`} className="col-start-2 text-small font-semibold text-attention-text">{error}</p> : null}
     </div>
   );

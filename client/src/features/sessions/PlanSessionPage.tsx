@@ -58,7 +58,7 @@ export function PlanSessionPage() {
       ) : (
         <form noValidate onSubmit={submit}>
           <Section narrow title="Visit">
-            <div className="grid gap-x-8 gap-y-4 sm:grid-cols-3">
+            <div className="grid gap-x-8 gap-y-4 sm:grid-cols-[11rem_1fr_14rem]">
               <SelectField label="Participant" error={errors.participantId?.message} help={<Link to={`/studies/${studyId}#participants`} className="link">Add one</Link>} {...form.register('participantId')}>
                 <option value="">Choose</option>
                 {participants.map((participant) => <option key={participant.id} value={participant.id}>{participant.code}, visit {participant.sessions + 1}</option>)}

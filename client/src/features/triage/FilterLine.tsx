@@ -15,7 +15,7 @@ export function FilterLine({ moments, query, onChange }: FilterLineProps) {
       {filters.map((filter) => (
         <label key={filter.name} className="text-soft">
           {filter.word}{' '}
-          <select value={query.get(filter.name) ?? ''} onChange={(event) => onChange({ [filter.name]: event.target.value === '' ? null : event.target.value })} className="bg-transparent text-ink font-semibold max-w-44 min-h-7">
+          <select aria-label={filter.word} value={query.get(filter.name) ?? ''} onChange={(event) => onChange({ [filter.name]: event.target.value === '' ? null : event.target.value })} className="bg-transparent text-ink font-semibold max-w-44 min-h-7">
             <option value="">any</option>
             {choicesOf(filter, moments).map(({ value, label }) => <option key={value} value={value}>{label}</option>)}
           </select>
@@ -23,8 +23,8 @@ export function FilterLine({ moments, query, onChange }: FilterLineProps) {
       ))}
       {any ? <button type="button" onClick={() => onChange(Object.fromEntries(filters.map(({ name }) => [name, null])))} className="underline decoration-rule-field underline-offset-4">show all</button> : null}
       <label className="ml-auto text-soft">
-        <span className="sr-only">Order</span>
-        <select value={orderOf(query)} onChange={(event) => onChange({ order: event.target.value === 'oldest' ? null : event.target.value })} className="bg-transparent min-h-7">
+        <span className="sr-only">order</span>
+        <select aria-label="order" value={orderOf(query)} onChange={(event) => onChange({ order: event.target.value === 'oldest' ? null : event.target.value })} className="bg-transparent min-h-7">
           {Object.entries(orders).map(([value, label]) => <option key={value} value={value}>{label}</option>)}
         </select>
       </label>

@@ -32,9 +32,9 @@ export function MomentRow({ moment, number, here, marked, pending, narrow }: Mom
         <span className="block truncate text-small text-soft">{moment.participantCode}, visit {moment.visit}, trial {moment.trialNumber}, {clock(moment.startS, 1)} · {moment.condition.label ?? `condition ${moment.condition.blindCode}`} · {wallDay(moment.plannedAt)}</span>
       </span>
       <span className={classNames('min-w-0', 'max-lg:order-last max-lg:col-span-3')}><Strip moment={moment} height={narrow ? 48 : 60} /></span>
-      <span className="min-w-0 text-small text-right">
+      <span className="min-w-0 text-small text-right max-lg:max-w-48">
         <span className={TONES[state]}>{pending ? 'being written' : STATE_WORDS[state]}</span>
-        {verdict && state !== 'open' ? <span className="block truncate text-soft">{verdict.by.name}{verdict.reason === '' ? '' : `: ${verdict.reason}`}</span> : null}
+        {verdict && state !== 'open' ? <span className="block truncate text-soft max-sm:hidden">{verdict.by.name}{verdict.reason === '' ? '' : `: ${verdict.reason}`}</span> : null}
       </span>
     </div>
   );

@@ -9,7 +9,7 @@ import { usePalette } from '../../replay/palette';
 import { channelSeries } from '../../replay/ribbons/ribbons';
 import type { Span } from '../../replay/span';
 import { fillColumns, makeColumns } from '../../replay/stave/columns';
-import { drawString } from '../../replay/stave/draw-strings';
+import { drawGaps, drawString } from '../../replay/stave/draw-strings';
 import { halfThickness } from '../../replay/stave/string-runs';
 import type { Stretch } from '../../replay/stretch';
 import { rigRevisionQuery } from '../rigs';
@@ -78,6 +78,8 @@ function drawStrip(context: CanvasRenderingContext2D, { moment, span, stretch, r
   context.globalAlpha = 0.55;
   context.fillRect(x(moment.startS), 0, Math.max(1, x(moment.endS) - x(moment.startS)), height);
   context.globalAlpha = 1;
+  const hole = moment.kind === 'gap' ? [{ startS: moment.startS, endS: moment.endS, missing: null }] : [];
+  drawGaps(context, hole, x, 0, height, { left: 0, right: across }, palette);
   parsed.map.tensions.forEach((channel, i) => {
     fillColumns([{ stretch, span }], ({ stretch: of }) => channelSeries(of, channel), span, moment.rateHz, columns);
     const middle = (i + 0.5) * row;

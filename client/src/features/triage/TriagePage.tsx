@@ -156,7 +156,7 @@ export function TriagePage() {
         aria-multiselectable
         aria-activedescendant={current ? optionId(current) : undefined}
         onKeyDown={onKeyDown}
-        className="flex-1 min-h-0 overflow-auto px-3 max-sm:px-0 outline-offset-[-2px]"
+        className="flex-1 min-h-0 overflow-auto px-3 max-sm:px-0 outline-offset-[-1px] focus-visible:outline-1"
       >
         {shown.length === 0 ? null : (
           <div className="relative" style={{ height: rows.getTotalSize() }}>

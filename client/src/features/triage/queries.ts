@@ -18,7 +18,8 @@ export const stripQuery = (recordingId: RecordingId, channelCount: number, span:
   staleTime: Infinity,
   gcTime: 30_000,
 });
-const STRIP_BUCKETS = 320;
+/** So many samples come as they are; a longer strip comes as bands. */
+const STRIP_BUCKETS = 1200;
 
 type Given = ResponseOf<typeof giveVerdicts>['verdicts'];
 
