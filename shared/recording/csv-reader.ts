@@ -74,7 +74,7 @@ class Reader implements CsvReader {
   finish(): Chunk[] {
     const chunks = this.tail.length > 0 ? this.push('\n') : [];
     if (this.line === 0) this.fault({ code: 'CSV_EMPTY', line: 1, column: 1, found: 'nothing', expected: 'a header that starts with t_s' });
-    else if (this.samples === 0) this.fault({ code: 'CSV_EMPTY', line: 2, column: 1, found: 'nothing', expected: 'at least one row below the header' });
+    else if (this.samples === 0 && this.faults.length === 0) this.fault({ code: 'CSV_EMPTY', line: 2, column: 1, found: 'nothing', expected: 'at least one row below the header' });
     const last = this.filling;
     this.filling = null;
     if (last && last.count > 0 && this.faults.length === 0) chunks.push(cut(last));

@@ -91,6 +91,7 @@ const lines = `
 /** Rooms of the live socket: entered or refused. */
 const roomLines = `
   devices                   y    y         y   y    y   y     n   n      s
+  study                     y    n         y   n    y   n     n   n      s
   session                   y    n         y   n    y   n     n   n      s
   trial                     y    n         y   n    y   n     n   n      s
 `;

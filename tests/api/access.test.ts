@@ -1,7 +1,6 @@
 /** Every route of the API, and every room of the live socket, against who may do what. */
 import { randomUUID } from 'node:crypto';
 import WebSocket from 'ws';
-import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { RouteId } from '@shared/api';
 import type { Problem } from '@shared/api/common';
@@ -9,6 +8,7 @@ import type { Trial } from '@shared/api/sessions';
 import type { SignedIn } from '@server/auth';
 import { makeMiniLab, startApp } from '../support/app';
 import { BenchDevice } from '../support/bench-device';
+import { contentsOf } from '../support/database';
 import type { HttpClient } from '../support/http-client';
 import { calls, type Ground, type Target } from './access-calls';
 import { access, type Caller, callers, type Cell, roomAccess } from './access-table';
@@ -75,19 +75,6 @@ async function ask(client: HttpClient, id: RouteId, { params = {}, query, body, 
 /** The same call about things that do not exist. */
 const elsewhere = (target: Target): Target => ({ ...target, params: Object.fromEntries(Object.keys(target.params ?? {}).map((name) => [name, randomUUID()])) });
 
-/** Everything that is stored, in one number a table. */
-async function stored(): Promise<Record<string, string>> {
-  const { db } = ground.app.open;
-  const rowsOf = async (query: ReturnType<typeof sql>) => ((await db.execute(query)) as unknown as { rows: Record<string, string>[] }).rows;
-  const tables = await rowsOf(sql`select table_name as name from information_schema.tables where table_schema = 'public' order by 1`);
-  const found: Record<string, string> = {};
-  for (const { name = '' } of tables) {
-    const [row] = await rowsOf(sql`select coalesce(md5(string_agg(t::text, '|' order by t::text)), '') as digest from ${sql.identifier(name)} t`);
-    found[name] = row!['digest']!;
-  }
-  return found;
-}
-
 const meant: Record<Exclude<Cell, 'yes'>, (id: RouteId) => Heard['code'][]> = {
   'sign-in': () => ['SIGN_IN'],
   no: () => ['FORBIDDEN'],
@@ -108,7 +95,7 @@ describe('who may do what', () => {
 
     const targets = new Map<RouteId, Target>();
     for (const { id } of refused) targets.set(id, await calls[id](ground, people[caller]));
-    const before = await stored();
+    const before = await contentsOf(ground.app.open.db);
     const heard: Record<string, string> = {};
     for (const { id, cell } of refused) {
       const target = targets.get(id)!;
@@ -118,7 +105,7 @@ describe('who may do what', () => {
       if (cell === 'absent') expect(await ask(clients[caller], id, elsewhere(target)), id).toMatchObject({ said });
     }
     expect(heard).toEqual(Object.fromEntries(refused.map(({ id, cell }) => [id, cell])));
-    expect(await stored(), 'what is refused changes nothing').toEqual(before);
+    expect(await contentsOf(ground.app.open.db), 'what is refused changes nothing').toEqual(before);
 
     const letIn: Record<string, string> = {};
     for (const { id } of allowed) {
@@ -176,7 +163,7 @@ describe('the rooms of the live socket', () => {
       socket.once('error', () => resolve(false));
     });
     expect(opened).toBe(person !== null);
-    const rooms: Record<string, string> = { devices: 'devices', session: `session:${lab.sessionId}`, trial: `trial:${ground.recordedTrial}` };
+    const rooms: Record<string, string> = { devices: 'devices', study: `study:${lab.study.id}`, session: `session:${lab.sessionId}`, trial: `trial:${ground.recordedTrial}` };
     const heard: Record<string, string> = {};
     for (const [name, room] of Object.entries(rooms)) {
       if (!opened) heard[name] = 'sign-in';

@@ -7,8 +7,9 @@
 import { mkdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs';
 import { randomUUID } from 'node:crypto';
 import { fileURLToPath } from 'node:url';
+import { type SQL, sql } from 'drizzle-orm';
 import pg from 'pg';
-import { openDatabase, type OpenDatabase } from '@server/db/engine';
+import { type Database, openDatabase, type OpenDatabase } from '@server/db/engine';
 import { migrationsDigest } from '@server/db/migrate';
 
 const cache = fileURLToPath(new URL('../../node_modules/.cache/tautbook', import.meta.url));
@@ -56,4 +57,13 @@ async function onPostgres(server: string): Promise<OpenDatabase> {
       await asOwner(`drop database ${name} with (force)`);
     },
   };
+}
+
+/** Everything that is stored, but for some tables, as one digest a table: to show that something changed nothing. */
+export async function contentsOf(db: Database, but: readonly string[] = []): Promise<Record<string, string>> {
+  const rowsOf = async (query: SQL) => ((await db.execute(query)) as unknown as { rows: { name: string; digest: string }[] }).rows;
+  const tables = await rowsOf(sql`select table_name as name from information_schema.tables where table_schema = 'public' order by 1`);
+  const digests = tables.filter(({ name }) => !but.includes(name))
+    .map(({ name }) => sql`select ${sql.raw(`'${name}'`)} as name, md5(string_agg(t::text, '|' order by t::text)) as digest from ${sql.identifier(name)} t`);
+  return Object.fromEntries((await rowsOf(sql.join(digests, sql` union all `))).map(({ name, digest }) => [name, digest]));
 }
