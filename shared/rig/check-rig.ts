@@ -3,6 +3,7 @@ import { cableLengths } from './kinematics/cable-lengths';
 import { SHORTEST_CABLE, structureMatrix } from './kinematics/structure-matrix';
 import { rigFileSchema, type RigFile } from './rig-file';
 import { rigModel } from './rig-model';
+import { placeWords, shapeWords } from './shape-words';
 import { rankOf } from './statics/rank-of';
 
 /** What can be wrong with a rig file. The codes are public: `calc` and the import page show them. */
@@ -55,7 +56,7 @@ function fault(code: RigFaultCode, path: string, message: string): RigFault {
 
 function shapeFaults(issue: z.core.$ZodIssue): RigFault[] {
   const path = issue.path.map(String).join('.');
-  const place = path === '' ? 'The file' : path;
+  const place = placeWords(issue.path);
   if (path === 'format') return [fault('FORMAT', path, 'format needs to be "tautbook.rig/1".')];
   if (issue.code === 'unrecognized_keys') {
     return issue.keys.map((key) => fault('UNKNOWN_FIELD', path === '' ? key : `${path}.${key}`, `${key} is not a field of ${place}. Check its spelling.`));
@@ -63,7 +64,7 @@ function shapeFaults(issue: z.core.$ZodIssue): RigFault[] {
   if (issue.code === 'invalid_type' && issue.input === undefined && /received undefined/.test(issue.message)) {
     return [fault('MISSING', path, `${place} is missing.`)];
   }
-  return [fault('TYPE', path, `${place}: ${issue.message}.`)];
+  return [fault('TYPE', path, `${place} ${shapeWords(issue)}.`)];
 }
 
 function bodyFaults(file: RigFile): RigFault[] {

@@ -6,10 +6,15 @@ import type { Page } from 'playwright-core';
 
 const source = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
 
-/** Serious and critical findings as lines that say where and what. */
-export async function seriousFindings(page: Page): Promise<string[]> {
-  await page.evaluate(source);
-  const results = await page.evaluate<AxeResults>('axe.run(document, { resultTypes: ["violations"] })');
+/**
+ * Serious and critical findings as lines that say where and what.
+ *
+ * @param only rules to ask for; left out: all of them
+ */
+export async function seriousFindings(page: Page, only?: readonly string[]): Promise<string[]> {
+  if (!(await page.evaluate('"axe" in window'))) await page.evaluate(source);
+  const options = { resultTypes: ['violations'], ...(only ? { runOnly: only } : {}) };
+  const results = await page.evaluate<AxeResults>(`axe.run(document, ${JSON.stringify(options)})`);
   return results.violations
     .filter((violation) => violation.impact === 'serious' || violation.impact === 'critical')
     .flatMap((violation) => violation.nodes.map((node) => `${violation.id}: ${node.target.join(' ')}: ${node.failureSummary ?? ''}`));

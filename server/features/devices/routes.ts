@@ -9,5 +9,9 @@ export function deviceRoutes(router: ApiRouter, devices: DeviceService): void {
     note({ subject: made.device.id, detail: { name: made.device.name, rig: made.device.rigCode } });
     return made;
   });
-  serve(router, revokeDevice, ({ params }) => devices.revoke(params.deviceId));
+  serve(router, revokeDevice, async ({ params, note }) => {
+    const revoked = await devices.revoke(params.deviceId);
+    note({ detail: { name: revoked.name } });
+    return revoked;
+  });
 }

@@ -16,11 +16,12 @@ export function peopleRoutes(router: ApiRouter, people: PeopleService): void {
   });
   serve(router, listPeople, async () => ({ people: await people.list() }));
   serve(router, invitePerson, async ({ body, person, note }) => {
-    note({ detail: { role: body.role } });
+    note({ detail: { name: body.name, role: body.role } });
     return people.invite(body, person);
   });
-  serve(router, changePerson, ({ params, body, note }) => {
-    note({ detail: { ...body } });
-    return people.change(params.personId, body);
+  serve(router, changePerson, async ({ params, body, note }) => {
+    const changed = await people.change(params.personId, body);
+    note({ detail: { name: changed.name, ...body } });
+    return changed;
   });
 }

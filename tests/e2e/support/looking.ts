@@ -1,7 +1,7 @@
 /** What can be seen of a page from outside: whether it has settled, whether it fits, what the keyboard reaches. */
 import { mkdirSync } from 'node:fs';
 import { dirname } from 'node:path';
-import type { Page } from 'playwright-core';
+import type { Locator, Page } from 'playwright-core';
 
 /** The page shows what it has to show: its heading, no waiting lines, its faces, its scene where it has one. */
 export async function settled(page: Page): Promise<void> {
@@ -40,6 +40,21 @@ export async function pictureWhole(page: Page, path: string, size: { width: numb
   }
   await page.screenshot({ path });
   if (height > size.height) await page.setViewportSize(size);
+}
+
+/** How many different colours the picture of an element has: a scene that draws nothing has a few. */
+export async function coloursOf(element: Locator): Promise<number> {
+  const picture = (await element.screenshot()).toString('base64');
+  return element.page().evaluate(async (base64) => {
+    const image = new Image();
+    image.src = `data:image/png;base64,${base64}`;
+    await image.decode();
+    const canvas = new OffscreenCanvas(image.width, image.height);
+    const context = canvas.getContext('2d');
+    if (!context) return 0;
+    context.drawImage(image, 0, 0);
+    return new Set(new Uint32Array(context.getImageData(0, 0, image.width, image.height).data.buffer)).size;
+  }, picture);
 }
 
 export interface KeyboardWalk {

@@ -16,6 +16,8 @@ const faults: readonly (readonly [what: string, code: RigFaultCode, path: string
   ['no limits', 'MISSING', 'tensionMax', /missing/, changed((file) => delete (file as Partial<RigFile>).tensionMax)],
   ['a mistyped field', 'UNKNOWN_FIELD', 'bodies.1.motoin', /motoin/, changed((file) => ((file.bodies[1] as unknown as Record<string, unknown>)['motoin'] = {}))],
   ['a text for a number', 'TYPE', 'cables.2.exit.1', /number/, changed((file) => ((file.cables[2]!.exit as unknown[])[1] = '0.3'))],
+  ['a position without its third axis', 'TYPE', 'cables.7.exit', /^exit of cable 8 needs at least 3 entries\.$/, changed((file) => (file.cables[7]!.exit as number[]).pop())],
+  ['a grasp of no known kind', 'TYPE', 'grasp.kind', /slide or hinge/, changed((file) => ((file.grasp as { kind: string }).kind = 'twist'))],
   ['a position that is not a number', 'TYPE', 'home.p.0', /number/, changed((file) => (file.home.p[0] = Number.NaN))],
   ['an axis that is no unit vector', 'AXIS_NOT_UNIT', 'bodies.1.motion.axis', /jawA.*1\.41/, changed((file) => (motionOf(file, 1).axis = [1, 1, 0]))],
   ['an axis of no length', 'AXIS_NOT_UNIT', 'bodies.1.motion.axis', /length 0/, changed((file) => (motionOf(file, 1).axis = [0, 0, 0]))],
