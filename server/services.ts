@@ -58,6 +58,7 @@ export const noDevices: DeviceControl = {
 
 export async function createServices({ db, bus, control, log, config, publicUrl, demo, now = () => new Date() }: ServiceOptions): Promise<Services> {
   const post = createPost(db, config, log);
+  const review = createReviewService({ db, bus, now });
   const sessions = createSessionService({ db, bus, control, now });
   const desk = await createSignIn({ db, post, log, authSecret: config.authSecret, publicUrl });
   return {
@@ -73,7 +74,7 @@ export async function createServices({ db, bus, control, log, config, publicUrl,
     recordings: createRecordingService(db),
     imports: createImportService({ db, sessions, now }),
     notes: createNoteService(db, bus, now),
-    flags: createFlagService(db),
-    review: createReviewService({ db, bus, now }),
+    flags: createFlagService(db, review),
+    review,
   };
 }

@@ -1,25 +1,10 @@
 /** Judging flags: the worklist of a study's moments, and verdicts that supersede each other and are never overwritten. */
 import { z } from 'zod';
-import { flagId, personRef, recordingId, rigRevisionId, sessionId, studyId, trialId, wallTime } from './common';
+import { flagId, recordingId, rigRevisionId, sessionId, studyId, trialId, wallTime } from './common';
 import { route } from './contract';
 import { flag } from './sessions';
 import { condition } from './studies';
-
-export const verdictValue = z.enum(['confirmed', 'dismissed', 'unsure']);
-export type VerdictValue = z.infer<typeof verdictValue>;
-
-const verdictId = z.uuid().brand<'VerdictId'>();
-export type VerdictId = z.infer<typeof verdictId>;
-
-export const verdict = z.object({
-  id: verdictId,
-  by: personRef,
-  /** withdrawn: its author took the verdict before it back. */
-  value: verdictValue.or(z.literal('withdrawn')),
-  reason: z.string(),
-  at: wallTime,
-});
-export type Verdict = z.infer<typeof verdict>;
+import { verdict, verdictId, verdictValue } from './verdict';
 
 /** A flag with what somebody needs to judge it without opening its trial. */
 export const moment = flag.extend({

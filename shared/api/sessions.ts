@@ -5,6 +5,7 @@ import {
   conditionId, deviceId, done, flagId, line, participantId, recordingId, rigRevisionId, sessionId, studyId, taskId, trialId, wallTime,
 } from './common';
 import { route } from './contract';
+import { verdict, verdictId } from './verdict';
 
 export const outcome = z.enum(['completed', 'aborted', 'void']);
 export type Outcome = z.infer<typeof outcome>;
@@ -214,6 +215,15 @@ export const flag = z.object({
 });
 export type Flag = z.infer<typeof flag>;
 
+/** A flag of a closed recording, as people judged it. */
+export const judgedFlag = flag.extend({
+  /** The one that holds; null: nobody judged it, or all took theirs back. */
+  verdict: verdict.nullable(),
+  /** The newest entry of all, for saying what one has seen when judging. */
+  seen: verdictId.nullable(),
+});
+export type JudgedFlag = z.infer<typeof judgedFlag>;
+
 export const listFlags = route({
   id: 'flags.list',
   method: 'GET',
@@ -223,6 +233,6 @@ export const listFlags = route({
   response: z.object({
     /** pending while the recording is being looked through. */
     state: z.enum(['growing', 'pending', 'found']),
-    flags: z.array(flag),
+    flags: z.array(judgedFlag),
   }),
 });

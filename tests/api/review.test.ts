@@ -2,7 +2,8 @@
 import { readFileSync } from 'node:fs';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import type { Problem } from '@shared/api/common';
-import type { Moment, Verdict } from '@shared/api/review';
+import type { Moment } from '@shared/api/review';
+import type { Verdict } from '@shared/api/verdict';
 import { makeMiniLab, startApp, type MiniLab, type TestApp } from '../support/app';
 import type { HttpClient } from '../support/http-client';
 

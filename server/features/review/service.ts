@@ -2,7 +2,8 @@
 import { v7 } from 'uuid';
 import { conditionId, flagId, personId, recordingId, rigRevisionId, sessionId, type StudyId, trialId } from '@shared/api/common';
 import type { BodyOf, ResponseOf } from '@shared/api/contract';
-import { type giveVerdicts, type listVerdicts, type Moment, verdict, type Verdict, type VerdictId } from '@shared/api/review';
+import type { giveVerdicts, listVerdicts, Moment } from '@shared/api/review';
+import { verdict, type Verdict, type VerdictId } from '@shared/api/verdict';
 import type { Database } from '../../db/engine';
 import type { Bus } from '../../live/bus';
 import { refuse } from './errors';
@@ -71,6 +72,12 @@ export function createReviewService({ db, bus, now }: { db: Database; bus: Bus; 
       for (const trial of new Set(touched.map((each) => each.trialId))) bus.tell('verdicts', { studyId: study, trialId: trialId.parse(trial) });
       const after = byFlag(await verdictsOn(db, ids));
       return { verdicts: ids.map((id) => ({ flagId: flagId.parse(id), ...stateOf(after.get(id) ?? []) })) };
+    },
+
+    /** How flags stand, by their ids; one that nobody judged is not in it. */
+    async standing(flagIds: readonly string[]): Promise<ReadonlyMap<string, Pick<Moment, 'verdict' | 'seen'>>> {
+      if (flagIds.length === 0) return new Map();
+      return new Map([...byFlag(await verdictsOn(db, flagIds))].map(([id, rows]) => [id, stateOf(rows)]));
     },
 
     async ofTrial(trial: string): Promise<ResponseOf<typeof listVerdicts>> {

@@ -1,6 +1,6 @@
 /** The foot of the list: what can be done with the moment at hand, each with its key. */
 import type { Ref } from 'react';
-import type { VerdictValue } from '@shared/api/review';
+import type { VerdictValue } from '@shared/api/verdict';
 import { KeyCap } from '../../ui/KeyCap';
 import { ProblemNote } from '../../ui/ProblemNote';
 

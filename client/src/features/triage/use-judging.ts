@@ -1,7 +1,8 @@
 /** What a judge does: one verdict or many, and taking the last ones back. */
 import { useRef, useState } from 'react';
 import type { StudyId } from '@shared/api/common';
-import type { Moment, VerdictValue } from '@shared/api/review';
+import type { Moment } from '@shared/api/review';
+import type { VerdictValue } from '@shared/api/verdict';
 import { useGiveVerdicts } from './queries';
 
 /** The server takes so many at once. */

@@ -3,7 +3,7 @@ import { Tabs } from 'radix-ui';
 import { useState } from 'react';
 import type { TrialId } from '@shared/api/common';
 import type { Note } from '@shared/api/notes';
-import type { Flag } from '@shared/api/sessions';
+import type { JudgedFlag } from '@shared/api/sessions';
 import { Button } from '../../ui/Button';
 import { ProblemNote } from '../../ui/ProblemNote';
 import { WaitingLines } from '../../ui/Waiting';
@@ -14,7 +14,7 @@ export type MarginTab = 'margin' | 'flags' | 'notes';
 
 interface MarginProps {
   readonly trialId: TrialId;
-  readonly flags: readonly Flag[];
+  readonly flags: readonly JudgedFlag[];
   readonly flagState: 'growing' | 'pending' | 'found' | 'loading';
   readonly notes: readonly Note[] | null;
   readonly error: unknown;
@@ -26,7 +26,9 @@ interface MarginProps {
   readonly onGo: (startS: number, endS: number | null, id: string) => void;
   readonly onLight: (id: string | null) => void;
   readonly onWrite: () => void;
-  readonly onNoteFlag: (flag: Flag) => void;
+  readonly onNoteFlag: (flag: JudgedFlag) => void;
+  /** Null where the reader may not judge. */
+  readonly onJudgeFlag: ((flag: JudgedFlag) => void) | null;
   readonly writing: React.ReactNode;
 }
 
@@ -75,6 +77,7 @@ function Entries(props: MarginProps & { which: MarginTab }) {
             onGo={() => props.onGo(flag.startS, flag.endS, key)}
             onLight={(on) => props.onLight(on ? key : null)}
             onNote={props.mayNote ? () => props.onNoteFlag(flag) : null}
+            onJudge={props.onJudgeFlag ? () => props.onJudgeFlag?.(flag) : null}
           />
         ) : (
           <NoteEntry

@@ -3,7 +3,7 @@ import { useQuery } from '@tanstack/react-query';
 import { useEffect, useMemo, useState } from 'react';
 import { useLocation } from 'react-router-dom';
 import type { RigRevision } from '@shared/api/rigs';
-import type { Flag, RecordingMeta, Trial } from '@shared/api/sessions';
+import type { JudgedFlag, RecordingMeta, Trial } from '@shared/api/sessions';
 import { rigModel } from '@shared/rig/rig-model';
 import { useWindowHeight, useWindowWidth } from '../../lib/window-size';
 import { useMe } from '../../lib/me';
@@ -34,6 +34,7 @@ import { PresentReaders } from './PresentReaders';
 import { flagsQuery, notesQuery } from './queries';
 import { RecordingRemarks } from './RecordingRemarks';
 import { useHere } from './use-here';
+import { VerdictDialog } from './VerdictDialog';
 import { usePlaceInAddress } from './use-place-in-address';
 import { useReadingRoom } from './use-reading-room';
 
@@ -44,7 +45,7 @@ interface TrialSpreadProps {
   readonly title: string;
 }
 
-const noFlags: readonly Flag[] = [];
+const noFlags: readonly JudgedFlag[] = [];
 
 export function TrialSpread({ trial, recording, revision, title }: TrialSpreadProps) {
   const me = useMe();
@@ -66,6 +67,7 @@ export function TrialSpread({ trial, recording, revision, title }: TrialSpreadPr
   const [selection, setSelection] = useState<Span | null>(place.span);
   const [writing, setWriting] = useState<NotePlace | null>(null);
   const [camera, setCamera] = useState<CameraName>('free');
+  const [judgingId, setJudgingId] = useState<string | null>(null);
   const [litId, setLitId] = useState<string | null>(null);
   const [sheet, setSheet] = useState(false);
   const [table, setTable] = useState(false);
@@ -168,6 +170,7 @@ export function TrialSpread({ trial, recording, revision, title }: TrialSpreadPr
     document.querySelector(`[id$="${entry.id}"]`)?.scrollIntoView({ block: 'nearest' });
   };
 
+  const judged = flags.find(({ id }) => id === judgingId);
   const instead = 'The stave below and the table of the moment (key T) show the same.';
   const staveHeight = narrow ? 300 : Math.min(440, Math.max(300, windowHeight * 0.45));
   return (
@@ -202,6 +205,7 @@ export function TrialSpread({ trial, recording, revision, title }: TrialSpreadPr
               onGo={goTo}
               onLight={setLitId}
               onWrite={() => write()}
+              onJudgeFlag={trial.may.judge ? (flag) => setJudgingId(flag.id) : null}
               onNoteFlag={(flag) => write({ startS: flag.startS, endS: flag.endS > flag.startS ? flag.endS : null, cables: flag.cable === null ? [] : [flag.cable] })}
               writing={writing ? <NewNote key={`${writing.startS} ${writing.endS}`} trialId={trial.id} place={writing} cableCount={rig.cableCount} onPlace={setWriting} onDone={() => { setWriting(null); setSelection(null); }} onCancel={() => setWriting(null)} /> : null}
             />
@@ -231,6 +235,7 @@ export function TrialSpread({ trial, recording, revision, title }: TrialSpreadPr
       </section>
       <PresentReaders present={room.present} myId={me.id} state={room.state} />
       <p role="status" className="sr-only">{room.news}</p>
+      {judged ? <VerdictDialog key={judged.id} studyId={trial.session.studyId} trialId={trial.id} flag={judged} myId={me.id} onClose={() => setJudgingId(null)} /> : null}
       {sheet ? <KeysSheet onClose={() => setSheet(false)} /> : null}
     </div>
   );

@@ -42,6 +42,7 @@ export function useReadingRoom(trialId: TrialId, clock: Clock | null, myId: stri
         placeNote(queries, trialId, message.note);
         if (message.note.author.id !== myId) setNews(`A note of ${message.note.author.name} came in.`);
         break;
+      case 'verdicts':
       case 'found':
         void queries.invalidateQueries({ queryKey: flagsQuery(trialId).queryKey });
         break;
