@@ -47,6 +47,8 @@ export default defineConfig({
     include: ['tests/**/*.test.{ts,tsx}', 'shared/**/*.test.ts', 'server/**/*.test.ts', 'client/**/*.test.{ts,tsx}'],
     testTimeout: 60_000,
     hookTimeout: 120_000,
+    // A condition that is waited for comes in its own time on a machine that does other things too.
+    expect: { poll: { timeout: 20_000 } },
     pool: 'forks',
     maxWorkers: 2,
   },

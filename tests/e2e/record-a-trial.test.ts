@@ -35,12 +35,13 @@ beforeAll(async () => {
     rig: { code: 'heron-8', revision: 1 },
     channels: channelNames(8),
     humanDelayMs: [20, 40],
-    reconnectMs: [100, 200],
+    // Away for so long that the page can be seen saying so.
+    reconnectMs: [2500, 3500],
     seed: 7,
-    // The first run is long enough to be stopped by hand; slack early, so that it is seen live.
+    // The first run is long enough to be stopped by hand; slack again and again, so that some is always on the moving page.
     source: (n) => simulateRun({
       rig: heron, task: 'pick-and-place', durationS: n === 0 ? 90 : 2, seed: 11 + n, rateHz: 1000, chunkSamples: 25,
-      troubles: n === 0 ? [{ kind: 'slack', atS: 1.5, durationS: 0.3, cable: 4 }] : [],
+      troubles: n === 0 ? Array.from({ length: 20 }, (_, i) => ({ kind: 'slack' as const, atS: 1.5 + 4 * i, durationS: 0.3, cable: 4 })) : [],
     }),
   });
   [operator, lead] = await Promise.all([visitor(browser, { expected: notSignedInYet }), visitor(browser, { colorScheme: 'dark', expected: notSignedInYet })]);
@@ -85,7 +86,7 @@ describe.sequential('a trial', () => {
     await desk().getByRole('button', { name: 'Stop the trial' }).waitFor();
     await elapsedIsBeyond(2.2);
     // The device's script: cable 4 hangs slack from 1.5 s on.
-    const slack = desk().getByRole('listitem').filter({ hasText: 'Slack, cable 4' });
+    const slack = desk().getByRole('listitem').filter({ hasText: 'Slack, cable 4' }).last();
     await slack.waitFor();
     expect(await slack.textContent()).toMatch(/^0:01\.[56]/);
     // The newest sample that is painted is one that the recorder has.
