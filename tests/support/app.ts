@@ -3,6 +3,7 @@
  * rig heron-8, a device with its key, one planned session.
  */
 import { readFileSync } from 'node:fs';
+import type { AddressInfo } from 'node:net';
 import { fileURLToPath } from 'node:url';
 import { pino } from 'pino';
 import type { DeviceId, LabRole, ParticipantId, SessionId, TrialId } from '@shared/api/common';
@@ -39,7 +40,9 @@ export async function startApp(options: Partial<Pick<TautbookOptions, 'demo' | '
   const log = pino({ level: 'warn' }, { write: (line: string) => logged.push(JSON.parse(line) as { level: number; msg: string }) });
   const config = loadConfig({ PORT: '0', AUTH_SECRET: 'a secret of the tests, long enough to be one', ...options.env });
   const book = await createTautbook({ config, open, log, checkResponses: true, ...options });
-  const { url } = await book.listen();
+  await book.listen();
+  // Where it listens; with PUBLIC_URL people would type another address.
+  const url = `http://127.0.0.1:${(book.server.address() as AddressInfo).port}`;
   return {
     url, open, book, logged,
     nobody: () => new HttpClient(url),
