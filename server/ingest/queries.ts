@@ -2,7 +2,7 @@ import { setImmediate as breathe } from 'node:timers/promises';
 import { and, asc, desc, eq, gt, gte, inArray, isNull, lt, lte, sql } from 'drizzle-orm';
 import type { RigFile } from '@shared/rig';
 import type { Database } from '../db/engine';
-import { devices, recordingChunks, recordingPyramid, recordings, recordingTail, rigRevisions, rigs, trials } from '../db/schema';
+import { devices, recordingChunks, recordingPyramid, recordings, recordingTail, rigRevisions, rigs, ruleRevisions, sessions, trials } from '../db/schema';
 
 export type RecordingRow = typeof recordings.$inferSelect;
 export type NewRecording = typeof recordings.$inferInsert;
@@ -28,6 +28,14 @@ export async function rigOfRevision(db: Database, id: string): Promise<RigFile> 
   const [row] = await db.select({ file: rigRevisions.file }).from(rigRevisions).where(eq(rigRevisions.id, id));
   if (!row) throw new Error('A recording points at a rig revision that is not there');
   return row.file;
+}
+
+/** Newest rules of the trial's study as they are stored; empty stands for the rig's default rules. */
+export async function rulesOfTrial(db: Database, trialId: string): Promise<Record<string, unknown>> {
+  const [row] = await db.select({ rules: ruleRevisions.rules }).from(ruleRevisions)
+    .innerJoin(sessions, eq(sessions.studyId, ruleRevisions.studyId)).innerJoin(trials, eq(trials.sessionId, sessions.id))
+    .where(eq(trials.id, trialId)).orderBy(desc(ruleRevisions.revision)).limit(1);
+  return row?.rules ?? {};
 }
 
 export async function touchDevice(db: Database, id: string, values: Partial<Pick<typeof devices.$inferInsert, 'faults' | 'clock' | 'lastSeenAt'>>): Promise<void> {

@@ -7,18 +7,15 @@
  */
 import { setImmediate as breathe } from 'node:timers/promises';
 import type { Logger } from 'pino';
-import { createFlagger, defaultRules } from '@shared/flags';
-import { parseChannels } from '@shared/recording';
-import { rigModel } from '@shared/rig';
 import type { LinkOptions } from '@shared/link';
 import type { Database } from '../db/engine';
 import type { Bus } from '../live/bus';
 import { EndsTold } from './ends-told';
 import type { TrialBook } from './ports';
-import { closeRecording, commitRuns, growingRuns, rigOfRevision, type RunRow, sweepTail, tailOf } from './queries';
+import { closeRecording, commitRuns, growingRuns, type RunRow, sweepTail, tailOf } from './queries';
 import { asChunk, unpackTail } from './received-batch';
 import { Run, type RunLoad } from './run';
-import { foldFlags, tellFlags } from './run-flags';
+import { flaggerOf, foldFlags, tellFlags } from './run-flags';
 import { readEncodedChunks } from './store';
 import { faultText } from './fault-text';
 import { unpackChunk } from './zlib-codec';
@@ -107,10 +104,8 @@ export class Recorder {
   }
 
   async add(row: RunRow): Promise<Run> {
-    const rig = rigModel(await rigOfRevision(this.parts.db, row.rigRevisionId));
     const run = new Run(row, this.parts.options);
-    const channels = parseChannels(row.channels, rig.cableCount);
-    if (channels.ok && run.trialId !== null) run.flagger = createFlagger(rig, channels.map, row.rateHz, defaultRules(rig));
+    run.flagger = await flaggerOf(this.parts.db, row);
     this.runs.set(key(row.deviceId, row.run), run);
     return run;
   }

@@ -1,10 +1,10 @@
 /** Every way in which the device link says no, through a real socket: the right code, nothing lost, counted on the device. */
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { eq } from 'drizzle-orm';
-import { faultKinds, float32Block, pack, type FaultCode } from '@shared/link';
+import { faultCodes, faultKinds, float32Block, pack, type FaultCode } from '@shared/link';
 import { devices } from '@server/db/schema';
 import { openLinkLab, type LinkLab } from '../support/link-lab';
-import { dtBlock, heronChannels, hello, LinkClient, START_US, testBatch, UpgradeRefusal } from '../support/link-client';
+import { dtBlock, heronChannels, hello, LinkClient, START_US, testBatch, type UpgradeRefusal } from '../support/link-client';
 
 let lab: LinkLab;
 beforeAll(async () => { lab = await openLinkLab(); });
@@ -261,4 +261,11 @@ describe('a running run', () => {
     expect(client.closed).toEqual({ code: faultKinds.KEY_REVOKED.closeCode });
     expect(await lab.recording(device.id, 'cut')).toMatchObject({ state: 'growing', samples: 20 });
   });
+});
+
+it('had every refusal that a device can be told counted on some device', async () => {
+  const rows = await lab.db.select({ faults: devices.faults }).from(devices);
+  const counted = new Set(rows.flatMap(({ faults }) => Object.keys(faults)));
+  // A key that nobody has belongs to no device; STORAGE is the server's own trouble (tests/faults).
+  expect(faultCodes.filter((code) => !counted.has(code))).toEqual(['KEY_UNKNOWN', 'STORAGE']);
 });
