@@ -73,10 +73,11 @@ export function commandFor({ key, shiftKey, ctrlKey, altKey, metaKey }: Pressed)
 /** A single letter or sign, which WCAG 2.2 (2.1.4) wants to be switchable. */
 export const isSingleKey = (command: Command): boolean => command.keys.every((key) => key.length === 1 && key !== ' ');
 
-/** What is printed on the key. */
+/** What is printed on the key, in letters: the page's face has no arrows. */
 export function keyWords(key: string): string {
   const words: Readonly<Record<string, string>> = {
-    ' ': 'Space', ArrowLeft: '←', ArrowRight: '→', 'shift+ArrowLeft': 'Shift ←', 'shift+ArrowRight': 'Shift →', PageUp: 'Page ↑', PageDown: 'Page ↓', Escape: 'Esc',
+    ' ': 'Space', ArrowLeft: 'Left', ArrowRight: 'Right', 'shift+ArrowLeft': 'Shift Left', 'shift+ArrowRight': 'Shift Right', PageUp: 'Page Up', PageDown: 'Page Down',
+    Home: 'Home', End: 'End', Escape: 'Esc',
   };
   const known = words[key];
   if (known !== undefined) return known;

@@ -28,7 +28,7 @@ export function SignInForm({ email = '', onSignedIn }: SignInFormProps) {
     <form noValidate onSubmit={form.handleSubmit((values) => enter.mutate(values))}>
       <div className="grid gap-4">
         <TextField label="E-mail" type="email" autoComplete="username" error={errors.email?.message} {...form.register('email')} />
-        <TextField label="Password" type="password" autoComplete="current-password" error={errors.password?.message} {...form.register('password')} />
+        <TextField label="Password" type="password" autoComplete="current-password" autoFocus={email !== ''} error={errors.password?.message} {...form.register('password')} />
         <ProblemNote error={enter.error} />
       </div>
       <Actions><Button tone="main" type="submit" busy={enter.isPending}>Sign in</Button></Actions>

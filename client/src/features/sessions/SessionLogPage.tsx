@@ -16,8 +16,8 @@ import { sessionLogQuery, sessionQuery } from './queries';
 
 const columns: RuledColumn<LogEntry>[] = [
   { key: 'n', head: 'No.', width: '3.5rem', cell: (entry) => <span className="text-soft">{entry.n}</span> },
-  { key: 'at', head: 'Wall time', plain: true, width: '13rem', cell: (entry) => wallTimeToSecond(entry.at) },
-  { key: 'who', head: 'Who', plain: true, width: '11rem', cell: (entry) => entry.who },
+  { key: 'at', head: 'Wall time', plain: true, width: '12rem', cell: (entry) => wallTimeToSecond(entry.at) },
+  { key: 'who', head: 'Who', plain: true, width: '10rem', cell: (entry) => entry.who },
   {
     key: 'what',
     head: 'What',
@@ -37,6 +37,7 @@ export function SessionLogPage() {
   const sessionId = idFromPath(sessionIdSchema, useParams()['sessionId']);
   const session = useSuspenseQuery(sessionQuery(sessionId)).data;
   const { entries, holds } = useSuspenseQuery({ ...sessionLogQuery(sessionId), staleTime: 0 }).data;
+  const last = entries.at(-1);
   const visit = visitWords(session.visit);
   return (
     <Page
@@ -52,7 +53,7 @@ export function SessionLogPage() {
       />
       <Section note="checked just now">
         {holds ? (
-          <p><StateWord tone="good">The chain holds.</StateWord> <span className="text-small text-soft">Each entry carries the SHA-256 of the one before it; none was changed, added between or taken out.</span></p>
+          <p><StateWord tone="good">The chain holds.</StateWord> <span className="text-small text-soft">Each entry carries the SHA-256 of the one before it; none was changed, added between or taken out.</span>{last ? <span className="block text-small text-soft break-all">Last link <span className="text-ink">{last.hash}</span></span> : null}</p>
         ) : (
           <div role="alert" className="border-l-4 border-attention pl-3">
             <p className="font-semibold">The chain is broken.</p>

@@ -1,6 +1,7 @@
 /** Writes a note, a reply or a new version. What is typed is kept until the server has it. */
 import { useEffect, useRef, useState } from 'react';
 import { asProblem } from '../../lib/api-problem';
+import { useMe } from '../../lib/me';
 import { Button } from '../../ui/Button';
 import { classNames } from '../../ui/class-names';
 import { TextArea } from '../../ui/Field';
@@ -20,7 +21,9 @@ interface NoteFormProps {
   readonly children?: React.ReactNode;
 }
 
-export function NoteForm({ draftPlace, label, send, sendWord, onDone, onCancel, firstText = '', children }: NoteFormProps) {
+export function NoteForm({ draftPlace: placeInPage, label, send, sendWord, onDone, onCancel, firstText = '', children }: NoteFormProps) {
+  // A draft is its writer's: whoever signs in at this tab next begins with an empty page.
+  const draftPlace = `${useMe().id}:${placeInPage}`;
   const [draft, setDraft] = useState<Draft>(() => {
     const kept = readDraft(draftPlace);
     return kept.text === '' ? { ...kept, text: firstText } : kept;
