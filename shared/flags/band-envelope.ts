@@ -14,7 +14,10 @@ export type EnvelopeState = {
   /** Samples of the segment so far. */
   count: number;
   lastUs: number;
-  /** Rings of the last 2 half + 1 samples: x, y, z one after another, and their times. */
+  /**
+   * Rings of the last 2 half + 1 samples, x, y, z one after another, each written twice one ring apart, so that the last
+   * samples always lie in one piece; and their times.
+   */
   positions: Float64Array;
   timesUs: Float64Array;
 };
@@ -39,27 +42,33 @@ export function bandEnvelope(lowHz: number, highHz: number, rateHz: number): Ban
   const hop = Math.max(1, Math.round(rateHz / valuesPerS));
   const periodUs = 1e6 / rateHz;
   const longestBridge = Math.max(1, Math.floor(longestBridgeS * rateHz));
-  const segment = new Float64Array(3 * ring);
+  const segment = new Float64Array(6 * ring);
 
   /** Amplitude at sample `centre` of the segment; `segment` is filled from the ring, ends reflected. */
   const at = (state: EnvelopeState, centre: number): Envelope => {
     const last = state.count - 1;
+    const timeUs = state.timesUs[centre % ring] as number;
+    if (centre >= half && centre + half <= last) return { timeUs, amplitudeM: magnitude(kernel, state.positions, 2 * ring, ((centre - half) % ring) + half) };
     for (let axis = 0; axis < 3; axis += 1) {
-      const from = axis * ring;
+      const from = 2 * axis * ring;
       const value = (n: number) => state.positions[from + (n % ring)] as number;
       for (let k = -half; k <= half; k += 1) {
         const n = centre + k;
         segment[from + k + half] = n < 0 ? 2 * value(0) - value(-n) : n > last ? 2 * value(last) - value(2 * last - n) : value(n);
       }
     }
-    return { timeUs: state.timesUs[centre % ring] as number, amplitudeM: magnitude(kernel, segment, ring) };
+    return { timeUs, amplitudeM: magnitude(kernel, segment, 2 * ring, half) };
   };
 
   const append = (state: EnvelopeState, timeUs: number, x: number, y: number, z: number, out: Envelope[]): void => {
     const slot = state.count % ring;
-    state.positions[slot] = x;
-    state.positions[ring + slot] = y;
-    state.positions[2 * ring + slot] = z;
+    const { positions } = state;
+    positions[slot] = x;
+    positions[ring + slot] = x;
+    positions[2 * ring + slot] = y;
+    positions[3 * ring + slot] = y;
+    positions[4 * ring + slot] = z;
+    positions[5 * ring + slot] = z;
     state.timesUs[slot] = timeUs;
     state.count += 1;
     state.lastUs = timeUs;
@@ -78,7 +87,7 @@ export function bandEnvelope(lowHz: number, highHz: number, rateHz: number): Ban
 
   return {
     hopUs: hop * periodUs,
-    start: () => ({ count: 0, lastUs: 0, positions: new Float64Array(3 * ring), timesUs: new Float64Array(ring) }),
+    start: () => ({ count: 0, lastUs: 0, positions: new Float64Array(6 * ring), timesUs: new Float64Array(ring) }),
     copy: (state) => ({ ...state, positions: state.positions.slice(), timesUs: state.timesUs.slice() }),
     push(state, timeUs, x, y, z, out) {
       if (!(x - x === 0 && y - y === 0 && z - z === 0)) return;
@@ -106,7 +115,7 @@ function bridge(
   append: (timeUs: number, x: number, y: number, z: number) => void,
 ): void {
   const slot = (state.count - 1) % ring;
-  const [x, y, z] = [0, 1, 2].map((axis) => state.positions[axis * ring + slot] as number) as [number, number, number];
+  const [x, y, z] = [0, 1, 2].map((axis) => state.positions[2 * axis * ring + slot] as number) as [number, number, number];
   const startUs = state.lastUs;
   for (let k = 1; k < steps; k += 1) {
     const s = k / steps;
@@ -114,16 +123,24 @@ function bridge(
   }
 }
 
-function magnitude({ real, imaginary }: BandKernel, segment: Float64Array, ring: number): number {
+/**
+ * The real part of the kernel is the same on both sides of its middle, the imaginary part the same with the other sign: two taps
+ * are taken in one.
+ *
+ * @param stride from one axis to the next
+ * @param middle of the window, within an axis
+ */
+function magnitude({ half, real, imaginary }: BandKernel, values: Float64Array, stride: number, middle: number): number {
   let power = 0;
   for (let axis = 0; axis < 3; axis += 1) {
-    const from = axis * ring;
-    let re = 0;
+    const at = axis * stride + middle;
+    let re = (real[half] as number) * (values[at] as number);
     let im = 0;
-    for (let k = 0; k < ring; k += 1) {
-      const value = segment[from + k] as number;
-      re += (real[k] as number) * value;
-      im += (imaginary[k] as number) * value;
+    for (let k = 1; k <= half; k += 1) {
+      const later = values[at + k] as number;
+      const earlier = values[at - k] as number;
+      re += (real[half + k] as number) * (later + earlier);
+      im += (imaginary[half + k] as number) * (later - earlier);
     }
     power += re * re + im * im;
   }

@@ -33,6 +33,15 @@ export interface MeasureChunk {
   readonly tensions: readonly ArrayLike<number>[];
   /** Wrench of the hand on the device, seven columns: force [N], moment [N m], grasp force. */
   readonly wrench?: readonly ArrayLike<number>[] | undefined;
+  /** 1 where tensions within the limits balance the wrench, 0 where none do. */
+  readonly feasible?: ArrayLike<number> | undefined;
+}
+
+interface ReachMeasures {
+  /** Time in which no tensions within the controller's limits balance the hand's wrench. */
+  readonly unreachableS: number | null;
+  /** The same as a share of the time in which it could be told, 0 to 1. */
+  readonly unreachableShare: number | null;
 }
 
 interface TensionMeasures {
@@ -49,7 +58,7 @@ interface TensionMeasures {
   readonly cables: readonly CableMeasures[];
 }
 
-interface Measures extends MovementMeasures, TensionMeasures, ForceMeasures {
+interface Measures extends MovementMeasures, TensionMeasures, ReachMeasures, ForceMeasures {
   /** From the first to the last sample. */
   readonly durationS: number | null;
 }
@@ -86,6 +95,13 @@ export function createMeasures(options: MeasureOptions): MeasureAccumulator {
   // A sample's tensions stand until the next sample; at the end of a chunk the row is copied, so that no chunk is kept.
   let standing: readonly ArrayLike<number>[] | null = null;
   let standingIndex = 0;
+  let standingFeasible = Number.NaN;
+  const reach = { toldS: 0, unreachableS: 0 };
+  const addReach = (seconds: number): void => {
+    if (Number.isNaN(standingFeasible)) return;
+    reach.toldS += seconds;
+    if (standingFeasible === 0) reach.unreachableS += seconds;
+  };
   const copied = Array.from({ length: options.cableCount }, () => new Float64Array(1));
   let finished = false;
 
@@ -96,7 +112,11 @@ export function createMeasures(options: MeasureOptions): MeasureAccumulator {
         const t = chunk.t[i] as number;
         const step = t - lastS;
         const gap = step > GAP_PERIODS * period;
-        if (standing !== null) tensions.push(standing, standingIndex, gap ? period : step);
+        if (standing !== null) {
+          tensions.push(standing, standingIndex, gap ? period : step);
+          addReach(gap ? period : step);
+        }
+        standingFeasible = chunk.feasible?.[i] ?? Number.NaN;
         if (gap) {
           movement.breakOff();
           force.breakOff();
@@ -116,12 +136,17 @@ export function createMeasures(options: MeasureOptions): MeasureAccumulator {
     },
     finish() {
       finished = true;
-      if (standing !== null) tensions.push(standing, standingIndex, period);
+      if (standing !== null) {
+        tensions.push(standing, standingIndex, period);
+        addReach(period);
+      }
       const empty = Number.isNaN(firstS);
       const measures: Measures = {
         durationS: empty ? null : lastS - firstS,
         ...movement.finish(),
         ...tensionMeasures(tensions.finish()),
+        unreachableS: reach.toldS > 0 ? reach.unreachableS : null,
+        unreachableShare: reach.toldS > 0 ? reach.unreachableS / reach.toldS : null,
         ...force.finish(),
       };
       return { ...measures, notMeasured: reasons(measures, empty, options) };
@@ -165,6 +190,7 @@ function reasonFor(measure: keyof Measures, measures: Measures, options: Measure
   if (measure.endsWith('ForceN') || measure === 'workJ' || measure === 'leastEnergyJ') {
     return 'The recording carries no wrench of the hand.';
   }
+  if (measure.startsWith('unreachable')) return 'Pose and tensions were never measured together.';
   if (/slack|Limit|saturated|Tension/.test(measure)) return 'No cable tension was measured.';
   return 'No stretch without a gap lasted long enough to smooth the position.';
 }

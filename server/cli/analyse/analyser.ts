@@ -1,5 +1,5 @@
 /** What `analyse` computes over a recording, chunk by chunk in constant memory (but for the lists it prints). */
-import { byStart, createFlagger, handWrench, type Flag, type Rules } from '@shared/flags';
+import { byStart, createFlagger, handStatics, type Flag, type HandStaticsColumns, type Rules } from '@shared/flags';
 import { createMeasures, type RecordingMeasures } from '@shared/motion';
 import { nominalRate, recordingSummer, shortestFloat32, type ChannelMap, type Chunk, type Gap } from '@shared/recording';
 import type { RigModel } from '@shared/rig';
@@ -38,7 +38,7 @@ function begin(rig: RigModel, map: ChannelMap, rules: Rules, rateHz: number | nu
   const rate = rateHz ?? 1;
   const flagger = createFlagger(rig, map, rate, rules);
   const summer = recordingSummer(map.names.length, rate);
-  const wrenchOf = handWrench(rig, map);
+  const staticsOf = handStatics(rig, map);
   const { min, max } = rig.graspRange;
   const measures = createMeasures({
     rateHz: rate,
@@ -53,7 +53,7 @@ function begin(rig: RigModel, map: ChannelMap, rules: Rules, rateHz: number | nu
     push(chunk) {
       flags.push(...flagger.step(chunk));
       summer.push(chunk);
-      measures.push(measureChunk(chunk, map, wrenchOf(chunk)));
+      measures.push(measureChunk(chunk, map, staticsOf(chunk)));
     },
     finish() {
       flags.push(...flagger.finish());
@@ -67,7 +67,7 @@ function begin(rig: RigModel, map: ChannelMap, rules: Rules, rateHz: number | nu
   };
 }
 
-function measureChunk(chunk: Chunk, map: ChannelMap, wrench: readonly Float64Array[]) {
+function measureChunk(chunk: Chunk, map: ChannelMap, { wrench, feasible }: HandStaticsColumns) {
   const column = (index: number | undefined) => chunk.columns[index as number] as Float32Array;
   const [x, y, z, qx, qy, qz, qw] = map.pose.map(column) as [Float32Array, Float32Array, Float32Array, Float32Array, Float32Array, Float32Array, Float32Array];
   return {
@@ -80,6 +80,7 @@ function measureChunk(chunk: Chunk, map: ChannelMap, wrench: readonly Float64Arr
     grasp: column(map.grasp),
     tensions: map.tensions.map(column),
     wrench,
+    feasible,
   };
 }
 

@@ -7,6 +7,10 @@ import { rotationEntries } from './rotation-entries';
 /** Below this share of the frame's size a cable has no direction that means anything. No unit. */
 export const SHORTEST_CABLE = 1e-9;
 
+/** Room that every call fills anew: this runs for each sample of a recording. */
+const rotation = new Float64Array(9);
+const attachment = new Float64Array(9);
+
 /**
  * Structure matrix of a rig at a pose: how cable tensions pull on palm and grasp.
  *
@@ -22,8 +26,8 @@ export const SHORTEST_CABLE = 1e-9;
  */
 export function structureMatrix(rig: RigModel, pose: Pose, out: Float64Array): Float64Array {
   const n = rig.cableCount;
-  const R = rotationEntries(pose.q, new Float64Array(9));
-  const b = new Float64Array(9);
+  const R = rotationEntries(pose.q, rotation);
+  const b = attachment;
   const [px, py, pz] = pose.p;
   for (let i = 0; i < n; i++) {
     attachmentInPalm(rig, i, pose.grasp, b);
