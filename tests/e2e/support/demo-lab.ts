@@ -72,13 +72,14 @@ export interface DemoHouse {
   close(): Promise<void>;
 }
 
-export async function openDemoHouse(options: { rateLimits?: Parameters<typeof createTautbook>[0]['rateLimits'] } = {}): Promise<DemoHouse> {
-  const open = await openDatabase({ dataDir: '', memory: await demoArchive() });
-  const lab = await seedDemoLab(open, { log: silent });
+/** @param nowMs when the lab's today is; left out: today */
+export async function openDemoHouse({ nowMs }: { nowMs?: number } = {}): Promise<DemoHouse> {
+  const open = nowMs === undefined ? await openDatabase({ dataDir: '', memory: await demoArchive() }) : await testDatabase();
+  const lab = await seedDemoLab(open, { log: silent, ...(nowMs === undefined ? {} : { nowMs }) });
   const logged: string[] = [];
   const log = pino({ level: 'warn' }, { write: (line: string) => void logged.push(line) });
   const config = loadConfig({ PORT: '0', AUTH_SECRET: 'a secret of the tests, long enough to be one' });
-  const book = await createTautbook({ config, open, log, demo: lab.signIns, checkResponses: true, clientDirectory: join(root, 'dist/client'), ...options });
+  const book = await createTautbook({ config, open, log, demo: lab.signIns, checkResponses: true, clientDirectory: join(root, 'dist/client') });
   const { url } = await book.listen();
 
   const client = async (who: CastName) => {

@@ -6,12 +6,12 @@ import type { Locator, Page } from 'playwright-core';
 /** The page shows what it has to show: its heading, no waiting lines, its faces, its scene where it has one. */
 export async function settled(page: Page): Promise<void> {
   await page.locator('h1').first().waitFor();
-  await page.waitForFunction(async () => {
-    await document.fonts.ready;
+  // Asked again and again until it holds: an answer that is a promise would count as yes at once.
+  await page.waitForFunction(() => {
     const waiting = document.querySelector('.waiting-line, [role="progressbar"]');
     const scene = document.querySelector('[data-testid="scene"]');
     const words = document.querySelector('main')?.textContent ?? '';
-    return waiting === null && !words.includes('Setting up the scene') && (scene === null || scene.querySelector('canvas') !== null);
+    return document.fonts.status === 'loaded' && waiting === null && !words.includes('Setting up the scene') && (scene === null || scene.querySelector('canvas') !== null);
   });
   // What was asked for has been painted.
   await page.evaluate(() => new Promise((resolve) => requestAnimationFrame(() => requestAnimationFrame(resolve))));

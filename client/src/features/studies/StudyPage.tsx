@@ -45,7 +45,7 @@ export function StudyPage() {
           <Section title="Sessions" note={counted(study.recordedTrials, 'trial recorded', 'trials recorded')}>
             <PanelBoundary><SessionsPanel study={study} plans={plans} /></PanelBoundary>
           </Section>
-          <PanelBoundary><ParticipantsPanel study={study} adds={plans} /></PanelBoundary>
+          <PanelBoundary sections><ParticipantsPanel study={study} adds={plans} /></PanelBoundary>
         </>
       )}
       <ProtocolPanel study={study} edits={leads} />

@@ -12,9 +12,9 @@ export function TodayPage() {
   const me = useMe();
   return (
     <Page title="Today" lead={weekday.format(new Date())} margin={me.demo ? 'demo lab, invented people' : undefined}>
-      {me.role === 'clinician' ? <PanelBoundary><ClinicianToday /></PanelBoundary> : null}
+      {me.role === 'clinician' ? <PanelBoundary sections><ClinicianToday /></PanelBoundary> : null}
       {me.role === 'administrator' ? <AdministratorToday /> : null}
-      {me.role === 'clinician' || (me.role === 'administrator' && me.memberships.length === 0) ? null : <PanelBoundary><RoomToday /></PanelBoundary>}
+      {me.role === 'clinician' || (me.role === 'administrator' && me.memberships.length === 0) ? null : <PanelBoundary sections><RoomToday /></PanelBoundary>}
     </Page>
   );
 }

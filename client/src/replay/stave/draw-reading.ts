@@ -92,7 +92,7 @@ export function drawTensionValues(context: CanvasRenderingContext2D, moment: Mom
     context.textAlign = 'right';
     context.font = font(12, 800);
     context.fillStyle = palette.ink;
-    context.fillText(String(i + 1), layout.narrow ? 16 : 40, y);
+    context.fillText(String(i + 1), layout.narrow ? 16 : 46, y);
     const tone = state === 'slack' ? palette.slackText : state === 'saturated' ? palette.saturatedText : state === 'near' ? palette.nearText : palette.inkFaint;
     context.fillStyle = tone;
     context.font = font(12, state === 'taut' ? 500 : 700);
@@ -101,9 +101,9 @@ export function drawTensionValues(context: CanvasRenderingContext2D, moment: Mom
     else if (Number.isNaN(value)) context.fillText('–', right, y);
     else context.fillText(layout.narrow ? value.toFixed(1) : `${value.toFixed(1)} N`, right, y);
     if (!layout.narrow && (state === 'slack' || state === 'saturated')) {
-      context.font = font(9.5, 700);
+      context.font = font(10, 700);
       context.textAlign = 'left';
-      context.fillText(state === 'slack' ? 'slack' : 'limit', 2, y);
+      context.fillText(state === 'slack' ? 'slack' : 'limit', 8, y);
     }
   });
 }
