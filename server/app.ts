@@ -3,7 +3,6 @@
  * on one port.
  */
 import { createServer, type IncomingMessage, type Server } from 'node:http';
-import type { AddressInfo } from 'node:net';
 import type { Duplex } from 'node:stream';
 import { fileURLToPath } from 'node:url';
 import type { Logger } from 'pino';
@@ -18,10 +17,10 @@ import type { DemoSignIn } from './features/people';
 import { createTrialBook } from './features/sessions';
 import { describeFault, isSameOrigin } from './http';
 import { createDeviceLink, type DeviceLink } from './ingest';
+import { listenOn } from './listen';
 import { createLive } from './live';
 import { type Bus, createBus } from './live/bus';
 import { createServices, type Services } from './services';
-import { StartRefusal } from './start-refusal';
 
 export interface TautbookOptions {
   config: Config;
@@ -114,17 +113,6 @@ const noSuchDoor: Upgrade = (_req, socket) => {
 function doorOf(req: IncomingMessage, doors: Record<string, { handleUpgrade: Upgrade }>): Upgrade {
   const door = doors[(req.url ?? '').split('?')[0] ?? ''];
   return door ? (...all) => door.handleUpgrade(...all) : noSuchDoor;
-}
-
-function listenOn(server: Server, { host, port }: Config): Promise<AddressInfo> {
-  return new Promise((resolve, reject) => {
-    server.once('error', (error: NodeJS.ErrnoException) => {
-      if (error.code === 'EADDRINUSE') reject(new StartRefusal('PORT_BUSY', `Another program already listens on port ${port} of ${host}.`, `Stop it, or choose another port: PORT=${port + 1}.`, { cause: error }));
-      else if (error.code === 'EACCES' || error.code === 'EADDRNOTAVAIL') reject(new StartRefusal('CONFIG', `This user cannot listen on port ${port} of ${host}.`, 'Choose another PORT (above 1023) or HOST.', { cause: error }));
-      else reject(error);
-    });
-    server.listen(port, host, () => resolve(server.address() as AddressInfo));
-  });
 }
 
 function closeServer(server: Server): Promise<void> {

@@ -9,15 +9,15 @@ import { once } from 'node:events';
 import { join } from 'node:path';
 import { loadConfig } from '../config';
 import type { DemoDevice } from '../db/seed';
-import { buildClientIfStale } from './client-build';
-import { type Closers, consoleLog, openData, root, runUntilStopped } from './launch';
+import { beginBuild, type Closers, consoleLog, openData, root, runUntilStopped } from './launch';
 
 function startDevice(url: string, device: DemoDevice, closers: Closers): void {
   const args = [
     '--import', 'tsx', join(root, 'server/cli/device.ts'),
     '--url', url.replace(/^http/, 'ws'), '--key', device.key, '--rig', device.rigFile, '--revision', String(device.revision), '--quiet',
   ];
-  const child = spawn(process.execPath, args, { cwd: root, stdio: ['ignore', 'ignore', 'inherit'] });
+  // The channel between them tells the device when this process is gone, however it went.
+  const child = spawn(process.execPath, args, { cwd: root, stdio: ['ignore', 'ignore', 'inherit', 'ipc'] });
   let stopping = false;
   child.once('exit', (code) => {
     if (!stopping) console.error(`The simulated device ended (status ${code ?? 'unknown'}). The pages work on; start it again with: npm run device -- --help`);
@@ -32,9 +32,10 @@ function startDevice(url: string, device: DemoDevice, closers: Closers): void {
 }
 
 await runUntilStopped(async (closers) => {
-  const config = loadConfig({ DATA_DIR: '.data/demo', LOG_LEVEL: 'warn', ...process.env, HOST: '127.0.0.1' });
+  // Whatever a real server is set to here, the demo stays on this machine and in a directory of its own.
+  const config = loadConfig({ DATA_DIR: '.data/demo', LOG_LEVEL: 'warn', ...process.env, HOST: '127.0.0.1', DATABASE_URL: '' });
   const log = consoleLog(config.logLevel);
-  const built = buildClientIfStale(root);
+  const built = beginBuild();
   const open = await openData(config);
   closers.add(() => open.close());
   const { seedDemoLab } = await import('../db/seed');

@@ -3,6 +3,7 @@ import { realpathSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { createSimulatedDevice, LinkRefusal, simulateRun, taskCodes, troubleKinds, wrenchChannels, type DeviceEvent, type DeviceReport, type SimulatedDevice, type TroubleKind, type TroubleWish } from '../simulator';
 import { channelNames } from '@shared/recording';
+import { onStopSignal } from './stop-signals';
 import { help, readDeviceCommand, UsageError, type DeviceCommand } from './device-options';
 
 /** Written to by the command; a test gives its own. */
@@ -129,12 +130,10 @@ const everythingIsIn = (report: DeviceReport): boolean => report.runs.every(({ s
 
 if (process.argv[1] !== undefined && realpathSync(process.argv[1]) === fileURLToPath(import.meta.url)) {
   const stopping = new AbortController();
-  const stop = () => {
-    if (stopping.signal.aborted) process.exit(1);
-    stopping.abort();
-  };
-  process.on('SIGINT', stop);
-  process.on('SIGTERM', stop);
+  const stop = () => stopping.abort();
+  onStopSignal(stop);
+  process.once('disconnect', stop); // the program that started it is gone
+  process.channel?.unref();
   const json = process.argv.includes('--json');
   process.exitCode = await runDevices(process.argv.slice(2), process.env, {
     say: (line) => (json ? process.stderr : process.stdout).write(`${line}\n`),

@@ -8,7 +8,10 @@ import { fileURLToPath } from 'node:url';
 import { pino } from 'pino';
 import type { Config } from '../config';
 import type { OpenDatabase } from '../db/engine';
+import { requireFreePort } from '../listen';
 import { StartRefusal } from '../start-refusal';
+import { buildClientIfStale } from './client-build';
+import { onStopSignal } from './stop-signals';
 
 export const root = fileURLToPath(new URL('../..', import.meta.url));
 
@@ -20,32 +23,38 @@ export function consoleLog(level: Config['logLevel']) {
 /** Runs closers in reverse order, once, each even when another failed. */
 export class Closers {
   private readonly steps: (() => Promise<void> | void)[] = [];
-  private closing: Promise<void> | undefined;
+  private closing: Promise<boolean> | undefined;
 
   add(step: () => Promise<void> | void): void {
     this.steps.push(step);
   }
 
-  close(): Promise<void> {
+  /** @returns whether every step went well */
+  close(): Promise<boolean> {
     this.closing ??= this.closeAll();
     return this.closing;
   }
 
-  private async closeAll(): Promise<void> {
+  private async closeAll(): Promise<boolean> {
+    let well = true;
     for (const step of this.steps.reverse()) {
       try {
         await step();
       } catch (error) {
+        well = false;
         console.error('While stopping:', error instanceof Error ? error.message : error);
       }
     }
+    return well;
   }
 }
 
+/** Opens and migrates the data, and looks whether the port is free, before anything that takes long. */
 export async function openData(config: Config): Promise<OpenDatabase> {
   const { openDatabase } = await import('../db/engine');
   const open = await openDatabase({ dataDir: config.dataDir, databaseUrl: config.databaseUrl });
   try {
+    await requireFreePort(config);
     await open.migrate();
     return open;
   } catch (error) {
@@ -54,39 +63,36 @@ export async function openData(config: Config): Promise<OpenDatabase> {
   }
 }
 
-function refusalOf(error: unknown): StartRefusal | null {
-  if (error instanceof StartRefusal) return error;
-  const code = error instanceof Error && 'code' in error ? error.code : undefined;
-  const path = error instanceof Error && 'path' in error ? String(error.path) : 'the disk';
-  if (code === 'EROFS' || code === 'EACCES' || code === 'EPERM') {
-    return new StartRefusal('DATA_READ_ONLY', `Cannot write to ${path}.`, 'Make it writable, or set DATA_DIR to a folder that is.', { cause: error });
-  }
-  if (code === 'ENOSPC') return new StartRefusal('DATA_READ_ONLY', 'The disk is full.', 'Free some space, or set DATA_DIR to a folder on another disk.', { cause: error });
-  return null;
+/** The client is built beside the rest of the start; a build that fails is heard of where it is awaited. */
+export function beginBuild(): Promise<boolean> {
+  const built = buildClientIfStale(root);
+  built.catch(() => undefined);
+  return built;
 }
 
 /**
- * Runs a command until SIGINT or SIGTERM. A second signal while stopping ends at once.
+ * Runs a command until it is told to stop. Stopped while it still starts, there is nothing to finish: what is not committed
+ * was never there.
  *
  * @param command gets the closers to register what it opened
  */
 export async function runUntilStopped(command: (closers: Closers) => Promise<void>): Promise<void> {
   const closers = new Closers();
-  let stopping = false;
-  const stop = () => {
-    if (stopping) process.exit(1);
-    stopping = true;
+  let started = false;
+  onStopSignal(() => {
     console.log('\nStopping; what is recorded is safe.');
-    closers.close().then(() => process.exit(0), () => process.exit(1));
-  };
-  process.on('SIGINT', stop);
-  process.on('SIGTERM', stop);
+    if (!started) process.exit(0);
+    void closers.close().then((well) => {
+      if (well) console.log('Stopped.');
+      process.exit(well ? 0 : 1);
+    });
+  });
   try {
     await command(closers);
+    started = true;
   } catch (error) {
     await closers.close();
-    const refusal = refusalOf(error);
-    if (refusal) console.error(`${refusal.message} ${refusal.wayOut}`);
+    if (error instanceof StartRefusal) console.error(`${error.message} ${error.wayOut}`);
     else console.error(error);
     process.exit(1);
   }

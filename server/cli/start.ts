@@ -1,12 +1,11 @@
 /** `npm start`: the real thing. No demo data, no default password; the first visit makes the administrator with a code printed here. */
 import { loadConfig } from '../config';
-import { buildClientIfStale } from './client-build';
-import { consoleLog, openData, root, runUntilStopped } from './launch';
+import { beginBuild, consoleLog, openData, runUntilStopped } from './launch';
 
 await runUntilStopped(async (closers) => {
   const config = loadConfig(process.env);
   const log = consoleLog(config.logLevel);
-  const built = buildClientIfStale(root);
+  const built = beginBuild();
   const open = await openData(config);
   closers.add(() => open.close());
   if (await built) log.info('client built');

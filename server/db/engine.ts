@@ -5,7 +5,7 @@
  * The embedded engine is one connection: inside `db.transaction(async (tx) => ...)` only `tx` may be used, a query on
  * `db` in there would wait for ever.
  */
-import { existsSync, renameSync, rmSync } from 'node:fs';
+import { existsSync, readFileSync, renameSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { PGlite, type PGliteOptions } from '@electric-sql/pglite';
 import { drizzle as drizzleNodePostgres } from 'drizzle-orm/node-postgres';
@@ -14,9 +14,9 @@ import { drizzle as drizzlePglite } from 'drizzle-orm/pglite';
 import { migrate as migratePglite } from 'drizzle-orm/pglite/migrator';
 import pg from 'pg';
 import { StartRefusal } from '../start-refusal';
-import { lockDataDirectory } from './data-lock';
+import { lockDataDirectory, refusalOf } from './data-lock';
 import { durableOptions } from './durable-node-fs';
-import { type Database, migrationsFolder, refuseNewerData } from './migrate';
+import { type Database, migrationsFolder, newerData, refuseNewerData } from './migrate';
 import * as schema from './schema';
 
 export type { Database } from './migrate';
@@ -48,7 +48,7 @@ const binaryBytes: PGliteOptions = {
 /** Any number; the same in every version, so that servers that start together migrate one after another. */
 const migrationLock = 4_680_001;
 
-/** @throws StartRefusal DATA_READ_ONLY, DATA_IN_USE, DATABASE_GONE */
+/** @throws StartRefusal DATA_READ_ONLY, DATA_FULL, DATA_IN_USE, DATA_NEWER, DATA_DAMAGED, DATABASE_GONE */
 export async function openDatabase(place: DatabasePlace): Promise<OpenDatabase> {
   if (place.memory) return embedded(await openInMemory(place.memory), () => undefined);
   if (place.databaseUrl !== undefined) return openPostgres(place.databaseUrl);
@@ -57,7 +57,7 @@ export async function openDatabase(place: DatabasePlace): Promise<OpenDatabase> 
     return embedded(await openOnDisk(place.dataDir), unlock);
   } catch (error) {
     unlock();
-    throw error;
+    throw error instanceof StartRefusal ? error : whyNotOpen(place.dataDir, error);
   }
 }
 
@@ -75,7 +75,24 @@ async function openOnDisk(dataDir: string): Promise<PGlite> {
     await made.close();
     renameSync(unfinished, directory);
   }
+  refuseNewerEngine(directory);
   return PGlite.create({ ...binaryBytes, ...durableOptions(directory) });
+}
+
+/** Major version of the PostgreSQL inside; every data directory of one names its own. */
+const engineVersion = 18;
+
+function refuseNewerEngine(directory: string): void {
+  const found = Number(readFileSync(join(directory, 'PG_VERSION'), 'utf8'));
+  if (found > engineVersion) throw newerData();
+}
+
+/** In the numbers of the system interface that the engine is compiled to (WASI); others are Node's codes. */
+const wasiNoSpace = 51;
+
+function whyNotOpen(dataDir: string, error: unknown): StartRefusal {
+  const known = refusalOf(dataDir, (error as { errno?: number }).errno === wasiNoSpace ? Object.assign(new Error('no space'), { code: 'ENOSPC' }) : error);
+  return known ?? new StartRefusal('DATA_DAMAGED', `The database in ${join(dataDir, 'database')} cannot be opened; it may be damaged.`, 'Put the last backup in its place, or choose another data directory with DATA_DIR.', { cause: error });
 }
 
 function embedded(client: PGlite, unlock: () => void): OpenDatabase {

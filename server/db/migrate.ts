@@ -31,9 +31,11 @@ export async function refuseNewerData(db: Database): Promise<void> {
   const [latest] = await rowsOf<{ at: string | number | null }>(db, sql`select max(created_at) as at from drizzle.__drizzle_migrations`);
   const newestKnown = Math.max(...known().map((migration) => migration.folderMillis));
   if (latest?.at === null || latest === undefined || Number(latest.at) <= newestKnown) return;
-  throw new StartRefusal(
-    'DATA_NEWER',
-    'These data were written by a newer version of Tautbook than this one.',
-    'Start the newer version, or choose another data directory with DATA_DIR (or another DATABASE_URL).',
-  );
+  throw newerData();
 }
+
+export const newerData = () => new StartRefusal(
+  'DATA_NEWER',
+  'These data were written by a newer version of Tautbook than this one.',
+  'Start the newer version, or choose another data directory with DATA_DIR (or another DATABASE_URL).',
+);
