@@ -8,14 +8,14 @@ import type { WebSocket } from 'ws';
 import { trialId as asTrialId, type DeviceId, type TrialId } from '@shared/api/common';
 import {
   type Batch, type Begin, type ClockEstimate, decodeDeviceMessage, type DeviceMessage, encodeServerMessage, type End,
-  type FaultCode, faultKinds, type Hello, type Mark, type ServerMessage,
+  type FaultCode, faultKinds, type Hello, type Mark, type ServerMessage, type WallTime,
 } from '@shared/link';
 import { ClockWatch } from './clock-watch';
 import { DeviceRecord } from './device-record';
 import { faultText } from './fault-text';
 import { checkHello, type Announced } from './hello-check';
 import type { Recorder, RecorderParts, RunListener } from './recorder';
-import { type DeviceRow, findRun, insertRecording } from './queries';
+import { type DeviceRow, findRun, insertRecording, type RecordingRow } from './queries';
 import type { Run } from './run';
 import { foldFlags, tellFlags } from './run-flags';
 import { serverUs } from './server-clock';
@@ -237,9 +237,15 @@ export class Connection implements RunListener {
     for (const run of this.streams) this.improveWall(run);
   }
 
+  /** A moment of the device's clock by the server's. None that is still to come: a clock that says so is wrong. */
+  private wallOf(deviceUs: number): WallTime | null {
+    const wall = this.clock.wallTime(deviceUs);
+    return wall === null || wall.serverUs - wall.uncertaintyUs > serverUs() ? null : wall;
+  }
+
   /** The start of a run by the server's clock, as sharp as it was ever known. */
   private improveWall(run: Run): void {
-    const wall = this.clock.wallTime(run.startUs);
+    const wall = this.wallOf(run.startUs);
     if (wall !== null && (run.wall === null || wall.uncertaintyUs < run.wall.uncertaintyUs)) run.wall = wall;
   }
 
@@ -255,6 +261,8 @@ export class Connection implements RunListener {
     const stored = await findRun(db, this.device.id, name);
     // Stored and growing but not taken up: an earlier begin broke off halfway, and a new hello takes it up.
     if (stored?.state === 'growing') return this.fault('STORAGE', undefined, { run: name }, true);
+    // The same run once more: its device did not hear that it is closed. Another one of the same name is refused.
+    if (stored?.startUs === Math.round(startUs)) return this.send({ type: 'ack', run: name, next: stored.nextBatch, ended: true });
     if (stored !== null) return this.fault('RUN_CLOSED', undefined, { run: name });
     if (this.recorder.ofDevice(this.device.id).length >= options.openRuns) return this.refuseFrame('DEVICE_BUSY', `${options.openRuns} runs of this device are open; end one first.`, { run: name });
     let forTrial: TrialId | null = null;
@@ -265,7 +273,7 @@ export class Connection implements RunListener {
       if (answer === 'not-armed') return this.refuseFrame('TRIAL_NOT_ARMED', faultKinds.TRIAL_NOT_ARMED.sentence, { run: name });
       forTrial = id.data;
     }
-    const wall = this.clock.wallTime(startUs);
+    const wall = this.wallOf(startUs);
     const row = await insertRecording(db, {
       deviceId: this.device.id, run: name, trialId: forTrial, rigRevisionId: announced.rigRevisionId, rateHz: announced.rateHz, channels: [...announced.channels],
       firmware: announced.firmware, startUs: Math.round(startUs), startedAt: new Date((wall?.serverUs ?? serverUs()) / 1000), startUncertaintyUs: wall?.uncertaintyUs ?? null,
@@ -292,15 +300,23 @@ export class Connection implements RunListener {
     if (run.trialId !== null) await this.parts.book.back(run.trialId);
   }
 
-  /** A message about a run that is not growing here: is it closed, or was it never begun? */
-  private async noRun(run: string, n?: number): Promise<void> {
-    const closed = this.recorder.find(this.device.id, run) !== undefined || (await findRun(this.parts.db, this.device.id, run)) !== null;
-    this.fault(closed ? 'RUN_CLOSED' : 'RUN_UNKNOWN', undefined, { run, ...(n === undefined ? {} : { n }) });
+  /** A message about a run that takes no more. What is in the book, or on its way there, is no fault; anything else is refused. */
+  private async noRun(name: string, isIn: (run: { nextBatch: number; marks: RecordingRow['marks']; startUs: number }) => boolean, n?: number): Promise<void> {
+    const about = { run: name, ...(n === undefined ? {} : { n }) };
+    const ending = this.recorder.find(this.device.id, name);
+    if (ending !== undefined) {
+      if (!isIn(ending)) this.fault('RUN_CLOSED', undefined, about); // else the acknowledgement of its end follows
+      return;
+    }
+    const stored = await findRun(this.parts.db, this.device.id, name);
+    if (stored === null) this.fault('RUN_UNKNOWN', undefined, about);
+    else if (stored.state === 'closed' && isIn(stored)) this.send({ type: 'ack', run: name, next: stored.nextBatch, ended: true });
+    else this.fault('RUN_CLOSED', undefined, about);
   }
 
   private batch(batch: Batch): Promise<void> | undefined {
     const run = this.recorder.find(this.device.id, batch.run);
-    if (run === undefined || run.ending !== null) return this.noRun(batch.run, batch.n);
+    if (run === undefined || run.ending !== null) return this.noRun(batch.run, ({ nextBatch }) => batch.n < nextBatch, batch.n);
     if (run.by !== this) return this.goOn(run).then(() => this.take(run, batch));
     this.take(run, batch);
     return undefined;
@@ -345,7 +361,7 @@ export class Connection implements RunListener {
 
   private mark({ run: name, atUs, label }: Mark): Promise<void> | undefined {
     const run = this.recorder.find(this.device.id, name);
-    if (run === undefined || run.ending !== null) return this.noRun(name);
+    if (run === undefined || run.ending !== null) return this.noRun(name, ({ marks, startUs }) => marks.some((each) => each.atS === (atUs - startUs) / 1e6 && each.label === label));
     const atS = (atUs - run.startUs) / 1e6;
     if (atS < 0) {
       this.fault('MALFORMED', 'The mark lies before the start of its run.', { run: name });

@@ -43,6 +43,7 @@ interface Load { readonly run: Run; readonly load: RunLoad }
 export class Recorder {
   /** By device and run name. */
   private readonly runs = new Map<string, Run>();
+  private readonly refreshing = new Map<string, Promise<void>>();
   private readonly listeners = new Map<string, RunListener>();
   private readonly ends: EndsTold;
   private timer: NodeJS.Timeout | undefined;
@@ -74,10 +75,10 @@ export class Recorder {
     }
   }
 
-  /** Goes on with a recording from what is stored of it. */
+  /** Goes on with a recording from what is stored of it. Nobody finds the run before it is whole. */
   private async adopt(row: RunRow): Promise<Run> {
     const { db, log } = this.parts;
-    const run = await this.add(row);
+    const run = await this.runOf(row);
     for await (const data of readEncodedChunks(db, row.id)) {
       const chunk = unpackChunk(data);
       run.restoreChunk(chunk);
@@ -89,11 +90,21 @@ export class Recorder {
       run.restoreTail(batches);
       for (const batch of batches) foldFlags(run, asChunk(batch, 0), log);
     }
+    this.runs.set(key(row.deviceId, row.run), run);
     return run;
   }
 
   /** A device is back: another server of the same database may have recorded it meanwhile, so what is stored counts. */
-  async refresh(deviceId: string): Promise<Run[]> {
+  refresh(deviceId: string): Promise<Run[]> {
+    // A device may be back twice before its runs are read: one after the other, or a run would be taken up half.
+    const turn = (this.refreshing.get(deviceId) ?? Promise.resolve()).then(() => this.refreshNow(deviceId));
+    const settled = turn.then(() => undefined, () => undefined);
+    this.refreshing.set(deviceId, settled);
+    void settled.then(() => { if (this.refreshing.get(deviceId) === settled) this.refreshing.delete(deviceId); });
+    return turn;
+  }
+
+  private async refreshNow(deviceId: string): Promise<Run[]> {
     const stored = await growingRuns(this.parts.db, deviceId);
     for (const run of this.ofDevice(deviceId)) {
       const row = stored.find(({ id }) => id === run.id);
@@ -104,9 +115,14 @@ export class Recorder {
   }
 
   async add(row: RunRow): Promise<Run> {
+    const run = await this.runOf(row);
+    this.runs.set(key(row.deviceId, row.run), run);
+    return run;
+  }
+
+  private async runOf(row: RunRow): Promise<Run> {
     const run = new Run(row, this.parts.options);
     run.flagger = await flaggerOf(this.parts.db, row);
-    this.runs.set(key(row.deviceId, row.run), run);
     return run;
   }
 

@@ -85,6 +85,31 @@ describe('acknowledgement', () => {
     client.send({ type: 'end', run: 'end', batches: 2, samples: 40, reason: 'stopped' });
     expect(await client.next('ack', () => true, since)).toMatchObject({ next: 2, ended: true });
   });
+
+  it('is given again for what comes once more after the end: the beginning, a batch, a mark', async () => {
+    const { client } = await begun('late');
+    client.send({ type: 'mark', run: 'late', atUs: START_US + 1000, label: 'here' });
+    await stream(client, 'late', 0, 3);
+    await ended(client, 'late', 3, 60);
+    for (const message of [{ type: 'begin', trial: null, run: 'late', startUs: START_US } as const, testBatch('late', 1), { type: 'mark', run: 'late', atUs: START_US + 1000, label: 'here' } as const]) {
+      const since = client.heard.length;
+      client.send(message);
+      expect(await client.next('ack', () => true, since)).toMatchObject({ run: 'late', next: 3, ended: true });
+    }
+    expect(client.faults()).toEqual([]);
+  });
+
+  it('is not taken back by batches that are repeated while the run is being closed', async () => {
+    const { device, client } = await begun('closing');
+    // In one go, as a device sends that was asked twice for the same batch.
+    for (const n of [0, 1]) client.send(testBatch('closing', n));
+    client.send({ type: 'end', run: 'closing', batches: 2, samples: 40, reason: 'done' });
+    for (const n of [0, 1]) client.send(testBatch('closing', n));
+    client.send({ type: 'end', run: 'closing', batches: 2, samples: 40, reason: 'done' });
+    await client.next('ack', (ack) => ack.ended === true);
+    expect(client.faults()).toEqual([]);
+    expectSamples(await lab.samples((await lab.recording(device.id, 'closing')).id), 40);
+  });
 });
 
 describe('a recording', () => {

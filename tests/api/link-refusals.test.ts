@@ -214,7 +214,7 @@ describe('a running run', () => {
     expect(await client.next('fault')).toMatchObject({ code: 'RUN_UNKNOWN', run: 'never', n: 0 });
     client.send({ type: 'end', run: 'over', batches: 1, samples: 20, reason: 'stopped' });
     await client.next('ack', (ack) => ack.ended === true);
-    for (const message of [testBatch('over', 1), { type: 'begin', trial: null, run: 'over', startUs: START_US } as const, { type: 'mark', run: 'over', atUs: START_US, label: 'late' } as const]) {
+    for (const message of [testBatch('over', 1), { type: 'begin', trial: null, run: 'over', startUs: START_US + 1 } as const, { type: 'mark', run: 'over', atUs: START_US, label: 'late' } as const]) {
       const since = client.heard.length;
       client.send(message);
       expect(await client.next('fault', () => true, since)).toMatchObject({ code: 'RUN_CLOSED', run: 'over', fatal: false });

@@ -13,14 +13,15 @@ export class LinkClient {
   readonly heard: ServerMessage[] = [];
   private readonly waiting = new Set<() => void>();
   closed: { code: number } | null = null;
-  private answersClock = true;
+  /** What it says when it is asked for its time, µs. */
+  clock: () => number = deviceNowUs;
 
   private constructor(readonly socket: WebSocket) {
     socket.on('message', (data: Buffer) => {
       const decoded = decodeServerMessage(data);
       if (!decoded.ok) throw new Error(decoded.problem);
       this.heard.push(decoded.message);
-      if (decoded.message.type === 'clock' && this.answersClock) this.send({ type: 'clock', id: decoded.message.id, deviceUs: deviceNowUs() });
+      if (decoded.message.type === 'clock') this.send({ type: 'clock', id: decoded.message.id, deviceUs: this.clock() });
       this.wake();
     });
     socket.on('error', () => undefined);
