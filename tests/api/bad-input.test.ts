@@ -4,6 +4,7 @@ import { request } from 'node:http';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { problem, type Problem } from '@shared/api/common';
 import type { Device } from '@shared/api/rigs';
+import { faultKinds } from '@shared/link';
 import { channelNames } from '@shared/recording';
 import { heronFile, makeMiniLab, type MiniLab, startApp, type TestApp } from '../support/app';
 import { BenchDevice } from '../support/bench-device';
@@ -174,7 +175,7 @@ describe('a device whose key is revoked', () => {
     const device = await BenchDevice.connect(app.url, made.key);
     expect((await administrator.post<Device>(`/api/devices/${made.device.id}/revoke`)).body.state).toBe('revoked');
     expect(await device.hear('fault')).toMatchObject({ code: 'KEY_REVOKED', fatal: true });
-    await device.leave();
+    expect(await device.gone).toBe(faultKinds.KEY_REVOKED.closeCode);
 
     const refusal = await LinkClient.open(app.url, made.key).then(() => null, (error: unknown) => error as UpgradeRefusal);
     expect(refusal).toBeInstanceOf(UpgradeRefusal);

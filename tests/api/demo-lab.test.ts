@@ -1,5 +1,5 @@
 /** The demo lab: made once, whole, from fixed seeds, and obeying the rules of every lab. */
-import { eq, sql } from 'drizzle-orm';
+import { eq } from 'drizzle-orm';
 import { pino } from 'pino';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { createTautbook, type Tautbook } from '@server/app';
@@ -9,7 +9,7 @@ import * as tables from '@server/db/schema';
 import { type DemoLab, seedDemoLab } from '@server/db/seed';
 import { chainHolds } from '@server/features/sessions';
 import { StartRefusal } from '@server/start-refusal';
-import { testDatabase } from '../support/database';
+import { contentsOf, testDatabase } from '../support/database';
 import { HttpClient } from '../support/http-client';
 
 const log = pino({ level: 'silent' });
@@ -79,10 +79,10 @@ describe('the demo lab', () => {
   });
 
   test('is found at the second start: nothing is made again and the device keeps its key', async () => {
-    const before = await open.db.execute(sql`select (select count(*) from notes) as notes, (select count(*) from recordings) as recordings`);
+    const before = await contentsOf(open.db);
     const again = await seedDemoLab(open, { log });
     expect(again).toEqual({ ...lab, fresh: false });
-    expect(await open.db.execute(sql`select (select count(*) from notes) as notes, (select count(*) from recordings) as recordings`)).toEqual(before);
+    expect(await contentsOf(open.db)).toEqual(before);
   });
 
   test('is the same lab wherever it is made', async () => {

@@ -9,8 +9,11 @@ export const benchRateHz = 1000;
 export class BenchDevice {
   private readonly inbox: ServerMessage[] = [];
   private wake: () => void = () => undefined;
+  /** Close code, once the connection is over. */
+  readonly gone: Promise<number>;
 
   private constructor(private readonly socket: WebSocket) {
+    this.gone = new Promise((resolve) => socket.once('close', resolve));
     socket.on('message', (data: Buffer) => {
       const decoded = decodeServerMessage(data);
       if (!decoded.ok) throw new Error(decoded.problem);
@@ -65,9 +68,8 @@ export class BenchDevice {
   }
 
   async leave(): Promise<void> {
-    const closed = new Promise((resolve) => this.socket.once('close', resolve));
     this.socket.close();
-    await closed;
+    await this.gone;
   }
 }
 
