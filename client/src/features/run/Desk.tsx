@@ -28,7 +28,7 @@ export function Desk({ session, rigId, current, onTurnTo, flags, marks, link, pl
       {current ? (
         <section aria-label="Now" className="mt-3">
           <h2 className="text-heading font-bold">Trial {current.number} <span className="font-normal text-soft">of {session.trialsPlanned}</span></h2>
-          <p className="text-soft">{current.task.title}, {conditionName(current.condition)}{current.task.timeLimitS === null ? '' : `, at most ${current.task.timeLimitS} s`}</p>
+          <p className="text-soft">{current.task.title}, {conditionName(current.condition)}{current.task.timeLimitS === null ? '' : `, at most ${current.task.timeLimitS}\u00a0s`}</p>
           <div className="mt-3" key={`${current.id} ${current.state}`}>
             <Step rigId={rigId} trial={current} onTurnTo={onTurnTo} flags={flags} marks={marks} player={player} />
           </div>

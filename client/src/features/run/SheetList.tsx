@@ -27,7 +27,7 @@ export function SheetList({ session, current, onTurnTo }: SheetListProps) {
           const here = trial.id === current?.id;
           const waits = trial.state === 'planned' || trial.state === 'stopped';
           return (
-            <li key={trial.id} aria-current={here ? 'step' : undefined} className={classNames('grid grid-cols-[2rem_minmax(0,1fr)_auto] gap-x-2 items-baseline border-b border-rule py-1.5', here && 'bg-wash')}>
+            <li key={trial.id} aria-current={here ? 'step' : undefined} className={classNames('grid grid-cols-[2rem_minmax(0,1fr)_auto] gap-x-2 items-baseline border-b border-rule py-1.5 pr-2', here && 'bg-wash')}>
               <span className="text-small text-soft text-right pr-1">{trial.number}</span>
               <span className="min-w-0">
                 {waits && !here && !busy ? (
