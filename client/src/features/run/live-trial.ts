@@ -8,6 +8,7 @@ import { parseChannels } from '@shared/recording/channels';
 import { createLiveSource, LIVE_PAGE_S, type LiveSource } from '../../replay/live/live-source';
 import { createPlayer, type Player } from '../../replay/player';
 import { loadWindow } from '../../replay/recording-source';
+import type { Span } from '../../replay/span';
 import type { MarkedFlag } from '../../replay/stave/draw-marks';
 
 export interface LiveFlag extends MarkedFlag {
@@ -24,6 +25,8 @@ export interface LivePlayer extends Player {
   readonly source: LiveSource;
 }
 
+/** By then what came over the line is durable and can be read, s. */
+const BOOKED_AFTER_S = 1;
 /** One window of the server holds so many samples at most. */
 const MOST_SAMPLES = 8192;
 
@@ -57,24 +60,27 @@ export function useLivePlayer(recording: RecordingMeta, cableCount: number): Liv
     const { source } = player;
     const controller = new AbortController();
     const load = loadWindow(id, channelCount);
-    // Samples, not averages, and the newer half first: so many go into one window.
-    const stepS = Math.min(LIVE_PAGE_S / 2, MOST_SAMPLES / rateHz);
-    const fetchBefore = async (toS: number) => {
-      for (let endS = toS; endS > Math.max(0, toS - LIVE_PAGE_S); endS -= stepS) {
-        source.putBefore(await load({ fromS: Math.max(0, endS - stepS), toS: endS }, MOST_SAMPLES, controller.signal));
-      }
+    // Samples, not averages: so many go into one window.
+    const mostS = MOST_SAMPLES / rateHz;
+    const read = async (span: Span) => source.merge(await load(span, MOST_SAMPLES, controller.signal), span);
+    let busy = false;
+    /** What did not come over the line is read from the book, once it is sure to be there. */
+    const fillHoles = () => {
+      if (busy || controller.signal.aborted) return;
+      const hole = source.holes().find(({ toS }) => toS < source.newestS - BOOKED_AFTER_S);
+      if (!hole) return;
+      busy = true;
+      void read({ fromS: Math.max(hole.fromS, hole.toS - mostS), toS: hole.toS }).then(
+        () => { busy = false; },
+        // Only the moving page misses it; tried again when the page is opened anew, the recording has it.
+        () => undefined,
+      );
     };
-    // What came before is only missing from the moving page when this fails; the recording has it.
-    const tryBefore = (toS: number) => void fetchBefore(toS).catch(() => undefined);
-    if (openedAtS > 0) tryBefore(openedAtS + 1);
-    // The room was joined a moment after the first sample: those in between are in the book by the time a second has come.
-    let firstS: number | null = null;
-    const stop = source.onChange(() => {
-      firstS ??= source.newestS;
-      if (source.newestS < firstS + 1) return;
-      stop();
-      if (firstS > 0) tryBefore(firstS + 0.5);
-    });
+    const openFirst = async () => {
+      for (let toS = openedAtS + BOOKED_AFTER_S; toS > Math.max(0, openedAtS - LIVE_PAGE_S); toS -= mostS) await read({ fromS: Math.max(0, toS - mostS), toS });
+    };
+    if (openedAtS > 0) void openFirst().catch(() => undefined);
+    const stop = source.onChange(fillHoles);
     return () => {
       stop();
       controller.abort();

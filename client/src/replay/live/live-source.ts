@@ -8,12 +8,14 @@ import type { ChannelMap } from '@shared/recording/channels';
 import { GAP_PERIODS } from '../find-moment';
 import type { Gap, Moment, Piece, Source } from '../source';
 import type { Span } from '../span';
-import { indexAt, stretchOfSamples, type Stretch } from '../stretch';
+import { stretchOfSamples, type Stretch } from '../stretch';
 
 /** Length of the page that moves along, s, and where on it the newest sample stands. */
 export const LIVE_PAGE_S = 12;
 const NOW_AT = 0.94;
 const TILE_S = 0.5;
+/** Samples read from the book come thinned, with steps of their own; a real hole is far wider than either. */
+const HOLE_STEPS = 4;
 /** Samples beside a tile's edges that its measures look at, s. */
 const MARGIN_S = 0.1;
 
@@ -22,8 +24,10 @@ export interface LiveSource extends Source {
   readonly newestS: number;
   /** What came over the socket; samples at or before the newest are left out. @param values channel after channel */
   take(timesS: Float64Array, values: Float32Array): void;
-  /** Older samples, read from the book after the page was opened in the middle of a trial. */
-  putBefore(stretch: Stretch): void;
+  /** Spans of the page that no sample came for: the page was opened late, or the way to it was too narrow. Not yet gaps. */
+  holes(): readonly Span[];
+  /** Samples of a span, read from the book. What is still missing in it afterwards is a gap of the recording. */
+  merge(stretch: Stretch, span: Span): void;
 }
 
 /** @param rateHz of the samples that are shown (after thinning), Hz */
@@ -39,6 +43,7 @@ export function createLiveSource(channels: ChannelMap, rateHz: number): LiveSour
   let end = 0;
   const tiles = new Map<number, Stretch>();
   let open: Piece | null = null;
+  const gaps: Gap[] = [];
 
   const newestS = () => (end > first ? (timesS[end - 1] ?? -Infinity) : -Infinity);
   const tell = () => {
@@ -86,6 +91,21 @@ export function createLiveSource(channels: ChannelMap, rateHz: number): LiveSour
     return stretchOfSamples(timesS.slice(from, to), values, { fromS, toS });
   };
 
+  const isGap = (fromS: number, toS: number): boolean => gaps.some((gap) => gap.startS <= fromS + 1e-6 && gap.endS >= toS - 1e-6);
+
+  const holes = (): Span[] => {
+    if (end === first) return [];
+    const found: Span[] = [];
+    const { fromS } = page();
+    const oldestS = timesS[first] ?? 0;
+    if (oldestS - fromS > HOLE_STEPS * longestStepS && !isGap(fromS, oldestS)) found.push({ fromS, toS: oldestS });
+    for (let i = first + 1; i < end; i += 1) {
+      const [startS, endS] = [timesS[i - 1] ?? 0, timesS[i] ?? 0];
+      if (endS - startS > HOLE_STEPS * longestStepS && endS > fromS && !isGap(startS, endS)) found.push({ fromS: startS, toS: endS });
+    }
+    return found;
+  };
+
   const page = (): Span => {
     const newest = newestS();
     const fromS = Math.max(0, (Number.isFinite(newest) ? newest : 0) - NOW_AT * LIVE_PAGE_S);
@@ -113,29 +133,37 @@ export function createLiveSource(channels: ChannelMap, rateHz: number): LiveSour
       for (const tile of tiles.keys()) if ((tile + 1) * TILE_S < oldest) tiles.delete(tile);
       if (newestS() !== had) tell();
     },
-    putBefore(stretch) {
+    holes,
+    merge(stretch, span) {
       const came = { timesS: timesS.slice(first, end), rows: rows.slice(first * width, end * width) };
-      const firstS = came.timesS[0] ?? Infinity;
       timesS = new Float64Array(2 * kept);
       rows = new Float32Array(2 * kept * width);
       first = 0;
       end = 0;
       tiles.clear();
-      const before = indexAt(stretch.startsS, firstS - 1e-9) + 1;
-      add(before, (i) => stretch.startsS[i] ?? Number.NaN, (channel, i) => stretch.mean[channel * stretch.count + i] ?? Number.NaN, 0.75 / rateHz);
-      add(came.timesS.length, (i) => came.timesS[i] ?? Number.NaN, (channel, i) => came.rows[i * width + channel] ?? Number.NaN);
+      const cameValue = (channel: number, i: number) => came.rows[i * width + channel] ?? Number.NaN;
+      const before = came.timesS.findIndex((atS) => atS >= span.fromS);
+      const split = before < 0 ? came.timesS.length : before;
+      add(split, (i) => came.timesS[i] ?? Number.NaN, cameValue);
+      // Both sources hold the same samples where they overlap: whichever comes first in time is taken, once.
+      let [a, b] = [0, split];
+      while (a < stretch.count || b < came.timesS.length) {
+        const [readS, cameS] = [stretch.startsS[a] ?? Infinity, came.timesS[b] ?? Infinity];
+        if (cameS <= readS + 0.25 / rateHz) {
+          const i = b;
+          add(1, () => cameS, (channel) => cameValue(channel, i));
+          b += 1;
+        } else {
+          const i = a;
+          add(1, () => readS, (channel) => stretch.mean[channel * stretch.count + i] ?? Number.NaN, 0.75 / rateHz);
+          a += 1;
+        }
+      }
+      for (const hole of holes()) if (Math.min(hole.toS, span.toS) - Math.max(hole.fromS, span.fromS) > HOLE_STEPS * longestStepS) gaps.push({ startS: hole.fromS, endS: hole.toS, missing: null });
       tell();
     },
     extent: page,
-    gaps() {
-      const found: Gap[] = [];
-      for (let i = first + 1; i < end; i += 1) {
-        const [startS, endS] = [timesS[i - 1] ?? 0, timesS[i] ?? 0];
-        // The seconds read from the book are averages with steps of their own; a real gap is far wider than either.
-        if (endS - startS > 4 * longestStepS) found.push({ startS, endS, missing: null });
-      }
-      return found;
-    },
+    gaps: () => gaps,
     overview: () => null,
     pieces(span) {
       if (end === first) return [];
@@ -159,7 +187,7 @@ export function createLiveSource(channels: ChannelMap, rateHz: number): LiveSour
       const index = indexFrom(atS + 0.5 / rateHz) - 1;
       if (index < first) return fill(0, end === first ? 'loading' : 'outside', atS, out);
       const last = index === end - 1;
-      return fill(index, !last && atS - (timesS[index] ?? 0) > 4 * longestStepS ? 'gap' : 'sample', atS, out);
+      return fill(index, !last && atS - (timesS[index] ?? 0) > HOLE_STEPS * longestStepS ? 'gap' : 'sample', atS, out);
     },
     sampleStep: () => null,
     heading: () => undefined,
