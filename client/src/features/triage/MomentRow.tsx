@@ -25,7 +25,7 @@ export function MomentRow({ moment, number, here, marked, pending, narrow }: Mom
     <div className={classNames('h-full border-b border-rule border-l-4 px-3 grid items-center gap-x-5 grid-cols-[2.5rem_minmax(0,19rem)_minmax(0,1fr)_11rem] max-lg:grid-cols-[2rem_minmax(0,1fr)_auto]', here ? 'bg-sheet border-l-ink' : 'border-l-transparent')}>
       <span className="text-small text-soft text-right">{marked ? <b className="text-ink" aria-hidden>marked</b> : number}</span>
       <span className="min-w-0">
-        <span className="block truncate">
+        <span className="block lg:truncate">
           <FlagMark kind={moment.kind} className="inline-block mr-2 align-[-2px]" />
           <b className={classNames(flagTone[moment.kind])}>{flagHead(moment)}</b> <span className="text-soft">{flagDetail(moment)}</span>
         </span>

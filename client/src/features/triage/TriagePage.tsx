@@ -49,7 +49,7 @@ export function TriagePage() {
   const found = shown.findIndex(({ id }) => id === hereId);
   const here = shown.length === 0 ? -1 : Math.max(0, found);
   const settled = useMemo(() => moments.filter((moment) => stateOfMoment(moment) !== 'open').length, [moments]);
-  const rows = useVirtualizer({ count: shown.length, getScrollElement: () => list.current, estimateSize: () => (narrow ? 132 : 84), overscan: 6 });
+  const rows = useVirtualizer({ count: shown.length, getScrollElement: () => list.current, estimateSize: () => (narrow ? 156 : 84), overscan: 6 });
 
   useRoom(`study:${studyId}`, (message) => {
     if (message.type === 'verdicts') void queries.invalidateQueries({ queryKey: momentsQuery(studyId).queryKey });
