@@ -90,7 +90,7 @@ describe('the demo lab', () => {
     await seedDemoLab(elsewhere, { log, nowMs: Date.UTC(2031, 4, 6, 12) });
     expect(await digests(elsewhere)).toEqual(await digests(open));
     await elsewhere.close();
-  });
+  }, 180_000);
 
   test('is never put into a real lab', async () => {
     const real = await testDatabase();

@@ -26,7 +26,10 @@ export function createStudyService(db: Database) {
   async function get(membership: Membership, person: SignedIn): Promise<Study> {
     const row = await findStudyOf(db, membership.studyId, person.id);
     if (row === null) throw refuse('STUDY_UNKNOWN');
-    const [conditions, tasks, members] = await Promise.all([conditionsOf(db, membership.studyId), tasksOf(db, membership.studyId), membersOf(db, membership.studyId)]);
+    // One after another: the demo lab is made inside a transaction, which is one connection.
+    const conditions = await conditionsOf(db, membership.studyId);
+    const tasks = await tasksOf(db, membership.studyId);
+    const members = await membersOf(db, membership.studyId);
     return {
       ...toSummary(row),
       protocol: row.protocol,
