@@ -7,7 +7,7 @@
  */
 import { existsSync, readFileSync, renameSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
-import { PGlite, type PGliteOptions } from '@electric-sql/pglite';
+import { PGlite } from '@electric-sql/pglite';
 import { drizzle as drizzleNodePostgres } from 'drizzle-orm/node-postgres';
 import { migrate as migrateNodePostgres } from 'drizzle-orm/node-postgres/migrator';
 import { drizzle as drizzlePglite } from 'drizzle-orm/pglite';
@@ -15,7 +15,8 @@ import { migrate as migratePglite } from 'drizzle-orm/pglite/migrator';
 import pg from 'pg';
 import { StartRefusal } from '../start-refusal';
 import { lockDataDirectory, refusalOf } from './data-lock';
-import { durableOptions } from './durable-node-fs';
+import { binaryBytes } from './embedded/binary-bytes';
+import { EmbeddedThread } from './embedded/thread';
 import { type Database, migrationsFolder, newerData, refuseNewerData } from './migrate';
 import * as schema from './schema';
 
@@ -26,7 +27,7 @@ export interface OpenDatabase {
   kind: 'pglite' | 'postgresql';
   /** @throws StartRefusal DATA_NEWER */
   migrate(): Promise<void>;
-  /** The embedded database as one archive, for snapshots; null on PostgreSQL. */
+  /** A database in memory as one archive, for snapshots; null for others. */
   dump(): Promise<Blob | null>;
   close(): Promise<void>;
 }
@@ -39,44 +40,39 @@ export interface DatabasePlace {
   memory?: boolean | Blob;
 }
 
-/** Parameters of bytea travel in binary, results are decoded at native speed: PGlite's own way is hex made in JavaScript. */
-const binaryBytes: PGliteOptions = {
-  serializers: { 17: (value: unknown) => value as string },
-  parsers: { 17: (text: string) => Buffer.from(text.slice(2), 'hex') },
-};
-
 /** Any number; the same in every version, so that servers that start together migrate one after another. */
 const migrationLock = 4_680_001;
 
 /** @throws StartRefusal DATA_READ_ONLY, DATA_FULL, DATA_IN_USE, DATA_NEWER, DATA_DAMAGED, DATABASE_GONE */
 export async function openDatabase(place: DatabasePlace): Promise<OpenDatabase> {
-  if (place.memory) return embedded(await openInMemory(place.memory), () => undefined);
+  if (place.memory) {
+    const client = await PGlite.create({ ...binaryBytes, ...(place.memory instanceof Blob ? { loadDataDir: place.memory } : {}) });
+    return embedded(client, () => client.dumpDataDir('none'), () => undefined);
+  }
   if (place.databaseUrl !== undefined) return openPostgres(place.databaseUrl);
   const unlock = lockDataDirectory(place.dataDir);
   try {
-    return embedded(await openOnDisk(place.dataDir), unlock);
+    const thread = await openOnDisk(place.dataDir);
+    // Drizzle asks nothing of its client but these calls.
+    return embedded(thread as unknown as PGlite, async () => null, unlock);
   } catch (error) {
     unlock();
     throw error instanceof StartRefusal ? error : whyNotOpen(place.dataDir, error);
   }
 }
 
-async function openInMemory(archive: boolean | Blob): Promise<PGlite> {
-  return PGlite.create({ ...binaryBytes, ...(archive instanceof Blob ? { loadDataDir: archive } : {}) });
-}
-
-async function openOnDisk(dataDir: string): Promise<PGlite> {
+async function openOnDisk(dataDir: string): Promise<EmbeddedThread> {
   const directory = join(dataDir, 'database');
   if (!existsSync(directory)) {
     // Made beside and moved in whole: a first start that is killed halfway leaves nothing that looks like a database.
     const unfinished = join(dataDir, 'database.unfinished');
     rmSync(unfinished, { recursive: true, force: true });
-    const made = await PGlite.create({ ...binaryBytes, ...durableOptions(unfinished) });
+    const made = await EmbeddedThread.open(unfinished);
     await made.close();
     renameSync(unfinished, directory);
   }
   refuseNewerEngine(directory);
-  return PGlite.create({ ...binaryBytes, ...durableOptions(directory) });
+  return EmbeddedThread.open(directory);
 }
 
 /** Major version of the PostgreSQL inside; every data directory of one names its own. */
@@ -95,7 +91,7 @@ function whyNotOpen(dataDir: string, error: unknown): StartRefusal {
   return known ?? new StartRefusal('DATA_DAMAGED', `The database in ${join(dataDir, 'database')} cannot be opened; it may be damaged.`, 'Put the last backup in its place, or choose another data directory with DATA_DIR.', { cause: error });
 }
 
-function embedded(client: PGlite, unlock: () => void): OpenDatabase {
+function embedded(client: PGlite, dump: OpenDatabase['dump'], unlock: () => void): OpenDatabase {
   const inner = drizzlePglite(client, { schema });
   // Both engines derive from one class; only the type of raw results differs, and raw results are not used.
   const db = inner as unknown as Database;
@@ -106,7 +102,7 @@ function embedded(client: PGlite, unlock: () => void): OpenDatabase {
       await refuseNewerData(db);
       await migratePglite(inner, { migrationsFolder });
     },
-    dump: () => client.dumpDataDir('none'),
+    dump,
     async close() {
       await client.close();
       unlock();
