@@ -3,7 +3,7 @@ import { readFileSync } from 'node:fs';
 import express, { type Express, Router } from 'express';
 import type { Logger } from 'pino';
 import { describeApi as describe } from '@shared/api/description';
-import { type Gate, isOpen, writeAudit } from './auth';
+import { changesAccess, type Gate, isOpen, writeAudit } from './auth';
 import type { Database } from './db/engine';
 import { deviceRoutes } from './features/devices';
 import { flagRoutes } from './features/flags';
@@ -29,6 +29,8 @@ export interface ApiOptions {
   clientDirectory: string;
   rateLimits: RateLimits;
   checkResponses: boolean;
+  /** Somebody's role, membership or sign-in was changed. */
+  onAccessChanged: () => void;
 }
 
 export interface RateLimits {
@@ -63,7 +65,7 @@ export function createApi(options: ApiOptions): Express {
   return app;
 }
 
-function routes({ db, services, checkResponses }: ApiOptions, gate: Gate): Router {
+function routes({ db, services, checkResponses, onAccessChanged }: ApiOptions, gate: Gate): Router {
   const router: ApiRouter = {
     express: Router(),
     checkResponses,
@@ -73,7 +75,10 @@ function routes({ db, services, checkResponses }: ApiOptions, gate: Gate): Route
       return found?.person ?? null;
     },
     guard: (id, person, params) => gate.pass(id, person, params),
-    audit: (line) => writeAudit(db, line),
+    async audit(line) {
+      await writeAudit(db, line);
+      if (changesAccess.has(line.action)) onAccessChanged();
+    },
   };
   const description = describeApi(version, isOpen);
   serve(router, describe, async () => description);

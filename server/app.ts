@@ -71,7 +71,7 @@ export async function createTautbook(options: TautbookOptions): Promise<Tautbook
     onFault,
     noteFor: services.notes.noteFor,
     mayEnter: (person, room) => gate.mayEnter(person, room),
-    whoIs: async (req) => (await services.desk.whoIs(req.headers))?.person ?? null,
+    whoIs: async (req) => (await services.desk.whoIs(req.headers, false))?.person ?? null,
     isOwnPage: (req) => isSameOrigin(req.headers, config.publicUrl),
   });
   const api = createApi({
@@ -81,6 +81,7 @@ export async function createTautbook(options: TautbookOptions): Promise<Tautbook
     clientDirectory: options.clientDirectory ?? builtClient,
     rateLimits: { ...defaultRateLimits, ...options.rateLimits },
     checkResponses: options.checkResponses ?? false,
+    onAccessChanged: () => live.reexamine(),
   });
 
   const server = createServer(api);

@@ -102,6 +102,11 @@ export const guards: Record<RouteId, Guard> = {
 /** Routes that answer whoever asks. */
 export const isOpen = (id: RouteId): boolean => guards[id].kind === 'anyone';
 
+/** Routes after which somebody may no longer be where they are: watchers of the live socket are looked at again. */
+export const changesAccess: ReadonlySet<string> = new Set<RouteId>([
+  'people.change', 'members.set', 'members.remove', 'auth.signOut', 'auth.endSession', 'auth.endOtherSessions', 'auth.changePassword', 'auth.passwordReset',
+]);
+
 /**
  * Sessions of a study that a member sees. Clinicians see those that a released summary names; until one is released,
  * none.

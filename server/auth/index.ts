@@ -2,6 +2,6 @@
 export { hashPassword } from 'better-auth/crypto';
 export { createSignIn, invitationDays, type Answered, type SignInDesk } from './sign-in';
 export { createGate, type Gate } from './gate';
-export { guards, isOpen, may, seesSessions, type Guard, type Via } from './guards';
+export { changesAccess, guards, isOpen, may, seesSessions, type Guard, type Via } from './guards';
 export { fits, type Access, type Membership, type SignedIn } from './person';
 export { writeAudit } from './queries';

@@ -35,8 +35,8 @@ export interface Answered<T> {
 
 /** Every method that refuses throws a Refusal. */
 export interface SignInDesk {
-  /** `setCookies` prolong the sign-in. */
-  whoIs(headers: IncomingHttpHeaders): Promise<{ person: SignedIn; setCookies: string[] } | null>;
+  /** `setCookies` prolong the sign-in. @param prolong false: only a look, that counts as no use of the sign-in */
+  whoIs(headers: IncomingHttpHeaders, prolong?: boolean): Promise<{ person: SignedIn; setCookies: string[] } | null>;
   signIn(headers: IncomingHttpHeaders, entry: BodyOf<typeof makeSignIn>): Promise<Answered<{ id: string; name: string }>>;
   signOut(headers: IncomingHttpHeaders): Promise<Answered<void>>;
   present(headers: IncomingHttpHeaders): Promise<SignInEntry | null>;
@@ -108,9 +108,9 @@ export async function createSignIn({ db, post, log, authSecret, publicUrl }: Sig
   const context = await auth.$context;
 
   return {
-    async whoIs(headers) {
+    async whoIs(headers, prolong = true) {
       if (headers.cookie === undefined) return null;
-      const { response, headers: answer } = await auth.api.getSession({ headers: fromNodeHeaders(headers), returnHeaders: true });
+      const { response, headers: answer } = await auth.api.getSession({ headers: fromNodeHeaders(headers), query: { disableRefresh: !prolong }, returnHeaders: true });
       if (response === null || response.user.closed === true) return null;
       const { id, name, email, role } = response.user;
       return { person: { id: personId.parse(id), name, email, role: labRole.parse(role) }, setCookies: answer.getSetCookie() };

@@ -18,6 +18,8 @@ export interface LiveParts extends RoomsParts {
 
 export interface Live {
   handleUpgrade(req: IncomingMessage, socket: Duplex, head: Buffer): void;
+  /** Somebody's access changed: who may no longer be where they are has to leave. */
+  reexamine(): void;
   close(): void;
 }
 
@@ -28,7 +30,9 @@ export function createLive(parts: LiveParts): Live {
   const rooms = new Rooms(parts);
   const sockets = new WebSocketServer({ noServer: true, maxPayload: MESSAGE_BYTES, perMessageDeflate: false });
   const alive = new Map<Viewer, boolean>();
+  /** Sign-ins also end by themselves, and by other servers of the same database: looked at with every ping. */
   const pings = setInterval(() => {
+    reexamine();
     for (const [viewer, answered] of alive) {
       if (!answered) viewer.socket.terminate();
       alive.set(viewer, false);
@@ -43,25 +47,46 @@ export function createLive(parts: LiveParts): Live {
     if (message.type === 'alive') return send(viewer, { type: 'alive' });
     if (message.type === 'leave') return rooms.leave(viewer, message.room);
     if (message.type === 'reading') return rooms.reading(viewer, message.room, message.atS);
+    if (!(await isStillSignedIn(viewer))) return;
     if (await parts.mayEnter(viewer.person, message.room)) rooms.join(viewer, message.room);
     else send(viewer, { type: 'refused', room: message.room, code: 'ROOM_UNKNOWN' });
   }
 
+  /** Takes the person as they are now; lets them go when they are signed out. */
+  async function isStillSignedIn(viewer: Viewer): Promise<boolean> {
+    const person = await parts.whoIs(viewer.request);
+    if (person === null) viewer.socket.close(1008, 'signed out');
+    else viewer.person = person;
+    return person !== null;
+  }
+
+  function reexamine(): void {
+    for (const viewer of alive.keys()) viewer.inOrder(() => examine(viewer));
+  }
+
+  async function examine(viewer: Viewer): Promise<void> {
+    if (viewer.socket.readyState !== viewer.socket.OPEN || !(await isStillSignedIn(viewer))) return;
+    for (const room of [...viewer.rooms]) {
+      if (await parts.mayEnter(viewer.person, room)) continue;
+      rooms.leave(viewer, room);
+      send(viewer, { type: 'refused', room, code: 'ROOM_UNKNOWN' });
+    }
+  }
+
   function welcome(person: SignedIn, req: IncomingMessage, socket: Duplex, head: Buffer): void {
     sockets.handleUpgrade(req, socket, head, (ws) => {
-      const viewer: Viewer = { socket: ws, person, rooms: new Set() };
-      alive.set(viewer, true);
-      // In order: a leave that was sent after a join must not overtake it.
       let queue: Promise<void> = Promise.resolve();
+      const viewer: Viewer = { socket: ws, request: req, person, rooms: new Set(), inOrder: (work) => { queue = queue.then(work).catch(parts.onFault); } };
+      alive.set(viewer, true);
       ws.on('message', (data: Buffer, isBinary) => {
         if (isBinary) return ws.close(1003, 'text frames only');
-        queue = queue.then(() => receive(viewer, data.toString('utf8'))).catch(parts.onFault);
+        viewer.inOrder(() => receive(viewer, data.toString('utf8')));
       });
       ws.on('pong', () => alive.set(viewer, true));
       ws.on('error', () => undefined); // a broken socket closes, and closing is handled
       ws.on('close', () => {
         alive.delete(viewer);
-        queue = queue.then(() => rooms.leaveAll(viewer)).catch(parts.onFault);
+        viewer.inOrder(() => rooms.leaveAll(viewer));
       });
     });
   }
@@ -78,6 +103,7 @@ export function createLive(parts: LiveParts): Live {
         },
       );
     },
+    reexamine,
     close() {
       clearInterval(pings);
       rooms.close();

@@ -1,4 +1,5 @@
 /** Who is in which room, and what is told there. A viewer whose socket is slow is skipped, never waited for. */
+import type { IncomingMessage } from 'node:http';
 import type { WebSocket } from 'ws';
 import type { PersonRef, SessionId, TrialId } from '@shared/api/common';
 import type { LiveFromServer } from '@shared/api/live';
@@ -9,8 +10,13 @@ import { Thinner } from './thinner';
 
 export interface Viewer {
   readonly socket: WebSocket;
-  readonly person: SignedIn;
+  /** With what it came in: who they are is asked again. */
+  readonly request: IncomingMessage;
+  /** As last looked at. */
+  person: SignedIn;
   readonly rooms: Set<string>;
+  /** One after another: a leave that was sent after a join must not overtake it. */
+  inOrder(work: () => Promise<void> | void): void;
 }
 
 /** Bytes that may wait in a viewer's socket; above it sample frames are left out until it has caught up. */

@@ -1,6 +1,5 @@
 /** Every route of the API, and every room of the live socket, against who may do what. */
 import { randomUUID } from 'node:crypto';
-import WebSocket from 'ws';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { RouteId } from '@shared/api';
 import type { Problem } from '@shared/api/common';
@@ -10,6 +9,7 @@ import { makeMiniLab, startApp } from '../support/app';
 import { BenchDevice } from '../support/bench-device';
 import { contentsOf } from '../support/database';
 import type { HttpClient } from '../support/http-client';
+import { LiveViewer } from '../support/live-viewer';
 import { calls, type Ground, type Target } from './access-calls';
 import { access, type Caller, callers, type Cell, roomAccess } from './access-table';
 import { type Description, operationsOf } from './api-description';
@@ -153,34 +153,59 @@ describe('who may do what', () => {
 });
 
 describe('the rooms of the live socket', () => {
+  const roomsOf = ({ lab, recordedTrial }: Ground): Record<string, string> => ({ devices: 'devices', study: `study:${lab.study.id}`, session: `session:${lab.sessionId}`, trial: `trial:${recordedTrial}` });
+
   it.each(callers)('open and stay closed for %s', async (caller) => {
-    const { app, lab } = ground;
+    const { app } = ground;
     const person = people[caller];
-    const client = person ? await app.signedIn(person) : app.nobody();
-    const socket = new WebSocket(`${app.url.replace(/^http/, 'ws')}/live/v1`, { headers: { origin: app.url, ...(client.cookie ? { cookie: client.cookie } : {}) } });
-    const opened = await new Promise<boolean>((resolve) => {
-      socket.once('open', () => resolve(true));
-      socket.once('error', () => resolve(false));
-    });
-    expect(opened).toBe(person !== null);
-    const rooms: Record<string, string> = { devices: 'devices', study: `study:${lab.study.id}`, session: `session:${lab.sessionId}`, trial: `trial:${ground.recordedTrial}` };
+    const viewer = await LiveViewer.open(app.url, person ? await app.signedIn(person) : app.nobody());
+    expect(viewer !== null).toBe(person !== null);
     const heard: Record<string, string> = {};
-    for (const [name, room] of Object.entries(rooms)) {
-      if (!opened) heard[name] = 'sign-in';
-      else {
-        const answer = new Promise<string>((resolve) => {
-          socket.on('message', (data: Buffer) => {
-            const message = JSON.parse(data.toString()) as { type: string; room?: string };
-            if (message.room === room && message.type === 'joined') resolve('yes');
-            if (message.room === room && message.type === 'refused') resolve('no');
-          });
-        });
-        socket.send(JSON.stringify({ type: 'join', room }));
-        heard[name] = await answer;
-      }
-    }
-    socket.terminate();
+    for (const [name, room] of Object.entries(roomsOf(ground))) heard[name] = viewer === null ? 'sign-in' : (await viewer.join(room)) ? 'yes' : 'no';
+    viewer?.leave();
     expect(heard).toEqual(Object.fromEntries([...roomAccess].map(([name, row]) => [name, row[caller]])));
+  });
+
+  it('are left by who loses their membership, at once, and only those', async () => {
+    const { app, lab } = ground;
+    const lead = await app.signedIn(lab.people.lead);
+    const path = `/api/studies/${lab.study.id}/members/${ground.spare.id}`;
+    await lead.put(path, { role: 'operator' });
+    const viewer = (await LiveViewer.open(app.url, await app.signedIn(ground.spare)))!;
+    const { trial, devices } = roomsOf(ground) as { trial: string; devices: string };
+    expect([await viewer.join(trial), await viewer.join(devices)]).toEqual([true, true]);
+    await lead.delete(path);
+    expect(await viewer.next(trial, ['refused'])).toMatchObject({ code: 'ROOM_UNKNOWN' });
+    expect(await viewer.join(trial)).toBe(false);
+    expect(viewer.heard).not.toContainEqual({ type: 'refused', room: devices, code: 'ROOM_UNKNOWN' });
+    viewer.leave();
+  });
+
+  it('are left by who may no longer come in with their new role', async () => {
+    const { app, lab } = ground;
+    const administrator = await app.signedIn(lab.people.administrator);
+    const viewer = (await LiveViewer.open(app.url, await app.signedIn(ground.spare)))!;
+    expect(await viewer.join('devices')).toBe(true);
+    await administrator.patch(`/api/people/${ground.spare.id}`, { role: 'clinician' });
+    await viewer.next('devices', ['refused']);
+    expect(await viewer.join('devices')).toBe(false);
+    viewer.leave();
+    await administrator.patch(`/api/people/${ground.spare.id}`, { role: 'operator' });
+  });
+
+  it('close for who signs out, is signed out from elsewhere, or is closed', async () => {
+    const { app, lab } = ground;
+    const administrator = await app.signedIn(lab.people.administrator);
+    const [first, second, third] = [await app.signedIn(ground.spare), await app.signedIn(ground.spare), await app.signedIn(ground.spare)];
+    const [one, two, three] = [(await LiveViewer.open(app.url, first))!, (await LiveViewer.open(app.url, second))!, (await LiveViewer.open(app.url, third))!];
+    await first.post('/api/auth/sign-out');
+    expect(await one.gone).toBe(1008);
+    await third.post('/api/auth/revoke-other-sessions');
+    expect(await two.gone).toBe(1008);
+    expect(await three.join('devices')).toBe(true);
+    await administrator.patch(`/api/people/${ground.spare.id}`, { closed: true });
+    expect(await three.gone).toBe(1008);
+    await administrator.patch(`/api/people/${ground.spare.id}`, { closed: false });
   });
 });
 
