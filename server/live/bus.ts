@@ -1,31 +1,24 @@
 /**
  * What happens in this process, told to whoever watches: the recorder and the features tell, the rooms listen.
  *
- * Telling never waits: a listener that throws or is slow must not reach the teller. Samples are told as they
- * lie in the recorder's memory: to be read at once, and not to be changed.
+ * Telling never waits: a listener that throws or is slow must not reach the teller. Samples are told as the chunk that
+ * arrived, shared and not to be changed.
  */
 import { EventEmitter } from 'node:events';
 import type { DeviceId, NoteId, RecordingId, SessionId, StudyId, TrialId } from '@shared/api/common';
 import type { TrialState } from '@shared/api/sessions';
 import type { Flag } from '@shared/flags';
+import type { Chunk } from '@shared/recording';
 
 /** A flag of a running recording: `open` while it is still going on. */
 export type LiveFlag = Omit<Flag, 'open'> & { open: boolean };
-
-/** Samples as they arrived: `values` channel after channel, `count` each. */
-export interface SampleBlock {
-  readonly count: number;
-  /** µs since the recording's start. */
-  readonly timesUs: Float64Array;
-  readonly values: Float32Array;
-}
 
 export interface BusEvents {
   device: { deviceId: DeviceId; state: 'connected' | 'recording' | 'gone' };
   /** A trial moved to another state; the recorder, the run page and the rooms all learn it here. */
   trial: { trialId: TrialId; sessionId: SessionId; state: TrialState };
   session: { sessionId: SessionId };
-  samples: { trialId: TrialId; recordingId: RecordingId; channels: readonly string[]; rateHz: number; block: SampleBlock; arrivedUs: number };
+  samples: { trialId: TrialId; recordingId: RecordingId; channels: readonly string[]; rateHz: number; chunk: Chunk; arrivedUs: number };
   /** Every flag of the running recording so far: those ended and those still open. */
   liveFlags: { trialId: TrialId; flags: readonly LiveFlag[] };
   mark: { trialId: TrialId; atS: number; label: string };

@@ -4,9 +4,10 @@
  * Between two frames every k-th sample is kept, so that a frame carries at most so many, the newest always among them. Slack
  * and saturation are told as flags, so a short one is not lost by thinning.
  */
+import type { Chunk } from '@shared/recording';
 import { shownEvery } from '@shared/api/live';
 import { float32Block, float64Block, pack } from '@shared/link';
-import type { BusEvents, SampleBlock } from './bus';
+import type { BusEvents } from './bus';
 
 /** What waits for a frame at most, samples: four seconds. */
 const MOST_WAITING = 1000;
@@ -17,12 +18,12 @@ export class Thinner {
   /** Samples to go until the next kept one. */
   private skip = 0;
 
-  push({ block, rateHz, ...about }: BusEvents['samples']): void {
+  push({ chunk, rateHz, ...about }: BusEvents['samples']): void {
     this.last = about;
     const every = shownEvery(rateHz);
     let i = this.skip;
-    for (; i < block.count; i += every) this.pending.push({ timeUs: block.timesUs[i] as number, values: sampleAt(block, i) });
-    this.skip = i - block.count;
+    for (; i < chunk.count; i += every) this.pending.push({ timeUs: chunk.timesUs[i] as number, values: sampleAt(chunk, i) });
+    this.skip = i - chunk.count;
     // Nobody took a frame for seconds: the oldest go, newest first is what a late viewer wants.
     if (this.pending.length > MOST_WAITING) this.pending.splice(0, this.pending.length - MOST_WAITING);
   }
@@ -45,8 +46,8 @@ export class Thinner {
   }
 }
 
-function sampleAt({ count, values }: SampleBlock, i: number): Float32Array {
-  const sample = new Float32Array(values.length / count);
-  for (let c = 0; c < sample.length; c += 1) sample[c] = values[c * count + i] as number;
-  return sample;
+function sampleAt({ columns }: Chunk, i: number): Float32Array {
+  const values = new Float32Array(columns.length);
+  for (let c = 0; c < columns.length; c += 1) values[c] = (columns[c] as Float32Array)[i] as number;
+  return values;
 }
