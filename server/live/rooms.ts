@@ -53,8 +53,11 @@ export class Rooms {
       bus.on('mark', ({ trialId, atS, label }) => this.tellTrial(trialId, (room) => ({ type: 'mark', room, trialId, atS, label }))),
       bus.on('trial', ({ trialId, sessionId, state }) => {
         this.sessionOf.set(trialId, sessionId);
+        const over = state === 'stopped' || state === 'judged';
+        // The last samples go out before the trial is forgotten: its end is what viewers look at.
+        if (over) this.frame(trialId);
         this.tellTrial(trialId, (room) => ({ type: 'trial', room, trialId, state }));
-        if (state === 'stopped' || state === 'judged') this.forget(trialId);
+        if (over) this.forget(trialId);
       }),
       bus.on('session', ({ sessionId }) => this.tell(`session:${sessionId}`, { type: 'session', room: `session:${sessionId}`, sessionId })),
       bus.on('flagsFound', ({ trialId }) => this.tellTrial(trialId, (room) => ({ type: 'found', room, trialId }))),
@@ -138,13 +141,17 @@ export class Rooms {
   }
 
   private frames(): void {
-    for (const [trialId, thinner] of this.thinners) {
-      const viewers = new Set(this.roomsOf(trialId).flatMap((room) => [...(this.members.get(room) ?? [])]));
-      if (viewers.size === 0) continue;
-      const frame = thinner.frame();
-      if (frame === null) continue;
-      for (const { socket } of viewers) if (socket.readyState === socket.OPEN && socket.bufferedAmount < SLOW_BYTES) socket.send(frame);
-    }
+    for (const trialId of this.thinners.keys()) this.frame(trialId);
+  }
+
+  private frame(trialId: TrialId): void {
+    const thinner = this.thinners.get(trialId);
+    if (thinner === undefined) return;
+    const viewers = new Set(this.roomsOf(trialId).flatMap((room) => [...(this.members.get(room) ?? [])]));
+    if (viewers.size === 0) return;
+    const frame = thinner.frame();
+    if (frame === null) return;
+    for (const { socket } of viewers) if (socket.readyState === socket.OPEN && socket.bufferedAmount < SLOW_BYTES) socket.send(frame);
   }
 
   private async note(room: string, noteId: string): Promise<void> {

@@ -90,7 +90,7 @@ describe('a sign-in', () => {
     await dialog.waitFor({ state: 'detached' });
     expect(await form.getByRole('textbox').inputValue()).toBe(words);
     await form.getByRole('button', { name: 'Write it down' }).click();
-    await page.getByTestId('margin-margin').getByText(words).waitFor();
+    await page.getByTestId('margin-margin').locator('p').filter({ hasText: words }).waitFor();
     const { body } = await (await house.client('lead')).get<{ notes: Note[] }>(`/api/trials/${at.richTrial}/notes`);
     expect(body.notes.filter(({ text }) => text === words)).toHaveLength(1);
     expect(complaints).toEqual([]);
