@@ -74,7 +74,7 @@ const everything: RunOptions['troubles'] = [
 ];
 
 describe('flags of a running trial', () => {
-  it('are those of the book afterwards, over a link that loses, repeats and breaks', async () => {
+  it('are those of the book afterwards, over a link that loses, repeats and breaks', { timeout: 240_000 }, async () => {
     const { device, watching, stored } = await recorded(0, { troubles: everything }, { lose: 0.03, repeat: 0.03, breakEveryS: 0.8 });
     expect(device.report().connections).toBeGreaterThan(1);
     const last = watching.heard.findLast((message) => message.type === 'flags');
@@ -85,7 +85,7 @@ describe('flags of a running trial', () => {
     expect(watching.heard.some((message) => message.type === 'flags' && message.flags.some(({ open }) => open))).toBe(true);
   });
 
-  it('follow the rules of the study where it has its own', async () => {
+  it('follow the rules of the study where it has its own', { timeout: 240_000 }, async () => {
     await app.open.db.insert(ruleRevisions).values({ studyId: lab.study.id, revision: 2, rules: { format: 'tautbook.rules/1', slack: { onsetN: 2.5, releaseN: 2.8, minDurationS: 0.02, mergeGapS: 0 }, oscillation: null, slip: null, saturation: null } });
     const { watching, stored } = await recorded(1, { troubles: everything }, {});
     expect(told(watching.heard.findLast((message) => message.type === 'flags')?.flags ?? [])).toEqual(told(stored));
@@ -95,7 +95,7 @@ describe('flags of a running trial', () => {
   });
 });
 
-it('sends a viewer samples in order, about 250 a second of the trial, the newest within the last frame', async () => {
+it('sends a viewer samples in order, about 250 a second of the trial, the newest within the last frame', { timeout: 240_000 }, async () => {
   const { watching } = await recorded(2, { troubles: [], durationS: 10 }, {});
   const times = watching.samples.flatMap(({ timesS }) => [...timesS]);
   expect(times.every((at, i) => i === 0 || at > (times[i - 1] as number))).toBe(true);
