@@ -78,7 +78,8 @@ export class FieldScanner {
     }
     this.kind = FieldKind.number;
     this.value = Number(text);
-    this.millionfold = this.value * 1e6;
+    const [mantissa, exponent = '0'] = text.split(/e/i);
+    this.millionfold = Number(`${mantissa}e${Number(exponent) + 6}`);
     this.decimals = Math.max(0, (parts[1] ?? parts[2] ?? '').length - Number(parts[3] ?? 0));
   }
 }

@@ -9,17 +9,16 @@ export type CsvDecimals = { readonly time: number; readonly channels: readonly n
 export type CsvPrinter = { header(): string; rows(chunk: Chunk): string };
 
 export function createCsvPrinter(channels: readonly ChannelName[], decimals?: CsvDecimals): CsvPrinter {
-  const printTime = (timeUs: number): string => (decimals ? fixed(timeUs / 1e6, decimals.time, seconds) : seconds(timeUs / 1e6));
   return {
     header: () => `${['t_s', ...channels].join(',')}\n`,
     rows({ count, timesUs, columns }) {
       let text = '';
       for (let i = 0; i < count; i += 1) {
-        text += printTime(timesUs[i] as number);
+        text += seconds(timesUs[i] as number, decimals?.time ?? 0);
         for (let c = 0; c < columns.length; c += 1) {
           const value = (columns[c] as Float32Array)[i] as number;
           const wanted = decimals?.channels[c];
-          text += wanted === undefined ? `,${shortestFloat32(value)}` : `,${fixed(value, wanted, shortestFloat32)}`;
+          text += wanted === undefined ? `,${shortestFloat32(value)}` : `,${fixed(value, wanted)}`;
         }
         text += '\n';
       }
@@ -28,18 +27,23 @@ export function createCsvPrinter(channels: readonly ChannelName[], decimals?: Cs
   };
 }
 
-/** With as many decimals as asked for when they read back the same, else as `otherwise` prints it. */
-function fixed(value: number, decimals: number, otherwise: (value: number) => string): string {
+/** With as many decimals as asked for when they read back the same, else with the fewest that do. */
+function fixed(value: number, decimals: number): string {
   if (value !== value) return '';
   const text = decimals <= 20 && Math.abs(value) < 1e15 ? value.toFixed(decimals) : '';
-  const signed = Object.is(value, -0) ? `-${text}` : text;
-  const same = otherwise === seconds ? Number(text) === Number(seconds(value)) : Math.fround(Number(text)) === Math.fround(value);
-  return text !== '' && same ? signed : otherwise(value);
+  if (text === '' || Math.fround(Number(text)) !== Math.fround(value)) return shortestFloat32(value);
+  return Object.is(value, -0) ? `-${text}` : text;
 }
 
-/** Seconds that were µs: fifteen digits undo the rounding of that division. */
-function seconds(value: number): string {
-  return plain(Number(value.toPrecision(15)));
+/** A time in µs as seconds with at least so many decimals: its own digits with the point moved, so that none is rounded away. */
+function seconds(timeUs: number, decimals: number): string {
+  const text = String(Math.abs(timeUs));
+  const [mantissa = '', exponent] = text.split('e');
+  if (exponent !== undefined) return `${sign(timeUs)}${mantissa}e${Number(exponent) - 6}`;
+  const [whole = '', fraction = ''] = mantissa.split('.');
+  const digits = whole.padStart(7, '0');
+  const behind = (digits.slice(-6) + fraction).replace(/0+$/, '').padEnd(decimals, '0');
+  return sign(timeUs) + digits.slice(0, -6) + (behind === '' ? '' : `.${behind}`);
 }
 
 /** Fewest decimals that read back as the same float32; nothing for a value that was not measured. */
@@ -65,10 +69,4 @@ function placed(whole: number, decimals: number): string {
   if (decimals === 0) return String(whole);
   const text = String(whole).padStart(decimals + 1, '0');
   return `${text.slice(0, -decimals)}.${text.slice(-decimals)}`;
-}
-
-/** Without an exponent where that is short: 0.0000012 rather than 1.2e-6. */
-function plain(value: number): string {
-  const text = String(value);
-  return text.includes('e-') ? value.toFixed(15).replace(/0+$/, '') : text;
 }

@@ -80,7 +80,9 @@ class Level {
       const column = columns[c] as Float32Array;
       let low = this.minimum[c] as number;
       let high = this.maximum[c] as number;
-      let sum = 0;
+      // Carried on rather than summed apart, so that the order of additions, and with it the last bit, is the same in any chunking.
+      const sumBefore = this.sum[c] as number;
+      let sum = sumBefore;
       let measured = to - from;
       for (let i = from; i < to; i += 1) {
         const value = column[i] as number;
@@ -89,10 +91,10 @@ class Level {
         sum += value;
       }
       // Rare: something in the stretch was not measured. Comparisons with NaN are false, so only sum and count are wrong.
-      if (sum !== sum) [sum, measured] = sumOfMeasured(column, from, to);
+      if (sum !== sum) [sum, measured] = addMeasured(sumBefore, column, from, to);
       this.minimum[c] = low;
       this.maximum[c] = high;
-      this.sum[c] = (this.sum[c] as number) + sum;
+      this.sum[c] = sum;
       this.measured[c] = (this.measured[c] as number) + measured;
     }
   }
@@ -160,8 +162,8 @@ class Level {
   }
 }
 
-function sumOfMeasured(column: Float32Array, from: number, to: number): [number, number] {
-  let sum = 0;
+function addMeasured(sumBefore: number, column: Float32Array, from: number, to: number): [number, number] {
+  let sum = sumBefore;
   let measured = 0;
   for (let i = from; i < to; i += 1) {
     const value = column[i] as number;

@@ -59,7 +59,7 @@ function begin(rig: RigModel, map: ChannelMap, rules: Rules, rateHz: number | nu
       flags.push(...flagger.finish());
       const { samples, startS, endS, gaps } = summer.result();
       return {
-        recording: { samples, duration: seconds(endS - startS), rateHz, gaps: gaps.map(printedGap) },
+        recording: { samples, duration: Number((endS - startS).toFixed(6)), rateHz, gaps: gaps.map(printedGap) },
         flags: flags.sort(byStart).map(printedFlag),
         measures: measures.finish(),
       };
@@ -97,5 +97,5 @@ function printedFlag({ kind, cable, startS, endS, peak }: Flag): Analysis['flags
   };
 }
 
-/** Without the last digits that dividing µs leaves behind. */
-const seconds = (value: number): number => Number(value.toPrecision(15));
+/** Without the last digits that dividing µs leaves behind, and with every µs of a clock that counts from 1970. */
+const seconds = (value: number): number => Number(value.toFixed(9));
