@@ -11,14 +11,16 @@ type Values = Parameters<typeof touchDevice>[2];
 
 export class DeviceRecord {
   private waiting: Values = {};
+  /** Counted since the last write. */
+  private faults: Partial<Record<FaultCode, number>> = {};
   private timer: NodeJS.Timeout | undefined;
   private writing: Promise<void> = Promise.resolve();
 
   constructor(private readonly device: DeviceRow, private readonly db: Database, private readonly log: Logger) {}
 
   fault(code: FaultCode): void {
-    this.device.faults[code] = (this.device.faults[code] ?? 0) + 1;
-    this.set({ faults: { ...this.device.faults } });
+    this.faults[code] = (this.faults[code] ?? 0) + 1;
+    this.set({});
   }
 
   set(values: Values): void {
@@ -32,11 +34,14 @@ export class DeviceRecord {
     this.timer = undefined;
     this.writing = this.writing.then(async () => {
       const values = { ...this.waiting, lastSeenAt: new Date() };
+      const { faults } = this;
       this.waiting = {};
+      this.faults = {};
       try {
-        await touchDevice(this.db, this.device.id, values);
+        await touchDevice(this.db, this.device.id, values, faults);
       } catch (error) {
         this.waiting = { ...values, ...this.waiting };
+        for (const code of Object.keys(faults) as FaultCode[]) this.faults[code] = (this.faults[code] ?? 0) + (faults[code] ?? 0);
         this.log.warn({ message: faultText(error) }, 'a device’s state was not stored');
       }
     });

@@ -12,7 +12,7 @@ export type TailRow = typeof recordingTail.$inferInsert;
 
 export async function findDeviceByKey(db: Database, keyHash: string) {
   const [row] = await db
-    .select({ id: devices.id, name: devices.name, rigCode: rigs.code, revokedAt: devices.revokedAt, faults: devices.faults })
+    .select({ id: devices.id, name: devices.name, rigCode: rigs.code, revokedAt: devices.revokedAt })
     .from(devices).innerJoin(rigs, eq(rigs.id, devices.rigId)).where(eq(devices.keyHash, keyHash));
   return row ?? null;
 }
@@ -38,8 +38,12 @@ export async function rulesOfTrial(db: Database, trialId: string): Promise<Recor
   return row?.rules ?? {};
 }
 
-export async function touchDevice(db: Database, id: string, values: Partial<Pick<typeof devices.$inferInsert, 'faults' | 'clock' | 'lastSeenAt'>>): Promise<void> {
-  await db.update(devices).set(values).where(eq(devices.id, id));
+/** @param more faults to add to those counted so far: another connection of the device, or another server, may be counting too */
+export async function touchDevice(db: Database, id: string, values: Partial<Pick<typeof devices.$inferInsert, 'clock' | 'lastSeenAt'>>, more: Readonly<Record<string, number>> = {}): Promise<void> {
+  const faults = sql`${devices.faults} || (
+    select coalesce(jsonb_object_agg(added.code, added.count::int + coalesce((${devices.faults} ->> added.code)::int, 0)), '{}')
+    from jsonb_each_text(${JSON.stringify(more)}::jsonb) as added (code, count))`;
+  await db.update(devices).set(Object.keys(more).length === 0 ? values : { ...values, faults }).where(eq(devices.id, id));
 }
 
 export async function insertRecording<D extends string | null>(db: Database, values: NewRecording & { deviceId: D }): Promise<RecordingRow & { deviceId: D }> {
