@@ -65,7 +65,7 @@ interface Measures extends MovementMeasures, TensionMeasures, ReachMeasures, For
 
 /** Results over a recording. Null means "could not be measured"; `notMeasured` says why. */
 export interface RecordingMeasures extends Measures {
-  readonly notMeasured: readonly { readonly measure: keyof Measures; readonly reason: string }[];
+  readonly notMeasured: readonly { readonly measure: keyof Measures | `cables.${number}`; readonly reason: string }[];
 }
 
 export interface MeasureAccumulator {
@@ -171,9 +171,14 @@ function tensionMeasures(held: ReturnType<ReturnType<typeof tensionTimes>['finis
 }
 
 function reasons(measures: Measures, empty: boolean, options: MeasureOptions): RecordingMeasures['notMeasured'] {
-  return (Object.keys(measures) as (keyof Measures)[])
+  const none = 'The recording holds no samples.';
+  const ofAll = (Object.keys(measures) as (keyof Measures)[])
     .filter((measure) => measures[measure] === null)
-    .map((measure) => ({ measure, reason: empty ? 'The recording holds no samples.' : reasonFor(measure, measures, options) }));
+    .map((measure) => ({ measure, reason: empty ? none : reasonFor(measure, measures, options) }));
+  const ofCables = measures.cables
+    .filter(({ peakTensionN }) => peakTensionN === null)
+    .map(({ cable }) => ({ measure: `cables.${cable}` as const, reason: empty ? none : `The tension of cable ${cable} was not measured.` }));
+  return [...ofAll, ...ofCables];
 }
 
 function reasonFor(measure: keyof Measures, measures: Measures, options: MeasureOptions): string {

@@ -21,9 +21,13 @@ interface Analysis { recording: { samples: number; duration: number; rateHz: num
 interface Run { status: number; stdout: string; stderr: string }
 interface Truth { rig: string; rows: number; sampleRateHz: number; incidents: { kind: string; cable: number | null; start: number; end: number; extreme?: number }[]; decoys: { kind: string; cable: number | null; start: number; end: number }[]; startEndTolerance: Record<string, number> }
 
-function analyse(...args: string[]): Promise<Run> {
+/** What `npm run -s analyse -- ...` runs, without npm's own half second; `throughNpm` shows that the two are the same. */
+const analyse = (...args: string[]) => started(process.execPath, ['--import', 'tsx', 'server/cli/analyse.ts', ...args]);
+const throughNpm = (...args: string[]) => started('npm', ['run', '-s', 'analyse', '--', ...args]);
+
+function started(program: string, args: readonly string[]): Promise<Run> {
   return new Promise((resolve, reject) => {
-    execFile('npm', ['run', '-s', 'analyse', '--', ...args], { cwd: project, maxBuffer: 1 << 26 }, (error, stdout, stderr) => {
+    execFile(program, args, { cwd: project, maxBuffer: 1 << 26 }, (error, stdout, stderr) => {
       if (error !== null && typeof error.code !== 'number') reject(error);
       else resolve({ status: error === null ? 0 : (error.code as number), stdout, stderr });
     });
@@ -35,6 +39,18 @@ async function analysed(...args: string[]): Promise<Analysis> {
   expect({ status, stderr }).toEqual({ status: 0, stderr: '' });
   expect(stdout).not.toMatch(/NaN|Infinity/);
   return JSON.parse(stdout) as Analysis;
+}
+
+/** Measures without a value of which nothing says why, at any depth. */
+function unsaid(measures: Analysis['measures']): string[] {
+  const said = new Set((measures.notMeasured as { measure: string; reason: string }[]).filter(({ reason }) => reason.length > 10).map(({ measure }) => measure));
+  const without = (value: unknown, path: string): string[] => {
+    if (typeof value === 'number' && Number.isFinite(value)) return [];
+    if (Array.isArray(value)) return value.flatMap((inner: { cable: number }) => without(inner, `${path}.${inner.cable}`));
+    if (typeof value === 'object' && value !== null) return Object.entries(value).flatMap(([key, inner]) => without(inner, `${path}.${key}`));
+    return [...said].some((measure) => path === measure || path.startsWith(`${measure}.`)) ? [] : [path];
+  };
+  return Object.entries(measures).filter(([key]) => key !== 'notMeasured').flatMap(([key, value]) => without(value, key));
 }
 
 let folder: string;
@@ -81,15 +97,27 @@ describe.each(['session-a', 'session-b'])('the reference recording %s', (name) =
 
   test('its measures are numbers with nothing left unsaid', () => {
     expect(found.measures.notMeasured).toEqual([]);
-    for (const [measure, value] of Object.entries(found.measures)) if (typeof value === 'number') expect({ measure, finite: Number.isFinite(value) }).toEqual({ measure, finite: true });
+    expect(unsaid(found.measures)).toEqual([]);
+  });
+
+  test('the answer has the shape of the contract (CONTRACTS.md section 4), flags in order of their begin', () => {
+    expect(Object.keys(found)).toEqual(['recording', 'flags', 'measures']);
+    expect(Object.keys(found.recording)).toEqual(['samples', 'duration', 'rateHz', 'gaps']);
+    for (const flag of found.flags) {
+      expect(['kind', 'cable', 'start', 'end', 'peak', 'cause']).toEqual(expect.arrayContaining(Object.keys(flag)));
+      expect(flag.end).toBeGreaterThan(flag.start);
+      expect('cable' in flag).toBe(['slack', 'saturation', 'slip'].includes(flag.kind));
+    }
+    expect(found.flags.map(({ start }) => start)).toEqual(found.flags.map(({ start }) => start).sort((a, b) => a - b));
   });
 });
 
 describe('the same recording in another dress', () => {
   test('plain instead of gzipped gives the same', async () => {
     const plain = kept('a.csv', gunzipSync(readFileSync(recordingOf('session-a.csv.gz'))));
-    const [one, two] = await Promise.all([analysed('--rig', rigOf('heron-8'), plain), analysed('--rig', rigOf('heron-8'), recordingOf('session-a.csv.gz'))]);
+    const [one, two] = await Promise.all([analyse('--rig', rigOf('heron-8'), plain), throughNpm('--rig', rigOf('heron-8'), recordingOf('session-a.csv.gz'))]);
     expect(one).toEqual(two);
+    expect(one).toMatchObject({ status: 0, stderr: '' });
   });
 
   test.each([200, 500, 2000])('at %i Hz the slack of 2.6 s and the saturation of 9.6 s are found within two periods', async (rateHz) => {
@@ -123,8 +151,44 @@ describe('the same recording in another dress', () => {
     const rows = table('session-a.csv.gz').filter(([t]) => Number(t) < 4).map((row) => row.map((field, i) => (i === at('t4_N') ? '' : i <= at('z_m') && i > 0 ? 'nan' : field)));
     const { flags, measures } = await analysed('--rig', rigOf('heron-8'), kept('missing.csv', text(rows)));
     expect(flags.filter(({ kind }) => kind === 'slack')).toEqual([]);
-    expect(measures.notMeasured.length).toBeGreaterThan(0);
-    for (const value of Object.values(measures)) expect(value).not.toBe(undefined);
+    expect(measures.notMeasured).toContainEqual({ measure: 'cables.4', reason: 'The tension of cable 4 was not measured.' });
+    // Not measured is not "none": no zero seconds of slack, no zero load cycles.
+    expect((measures.cables as object[])[3]).toEqual({ cable: 4, meanTensionN: null, peakTensionN: null, slackS: null, nearLimitS: null, saturatedS: null, loadCycles: null, largestCycleN: null });
+    expect(unsaid(measures)).toEqual([]);
+  });
+
+  test('a recording of times alone has nothing to measure, and says so of everything', async () => {
+    const rows = table('session-a.csv.gz').slice(0, 4000).map(([t = '']) => [t, ...names.map(() => '')]);
+    const { recording, flags, measures } = await analysed('--rig', rigOf('heron-8'), kept('times.csv', text(rows)));
+    expect(recording).toMatchObject({ samples: 4000, rateHz: 1000, gaps: [] });
+    expect(flags).toEqual([]);
+    expect(measures).toMatchObject({ pathLengthM: null, sparc: null, meanTensionN: null, workJ: null });
+    expect(unsaid(measures)).toEqual([]);
+  });
+
+  test('a clock that counts µs since 1970 keeps every digit: the same flags, so much later', async () => {
+    const all = table('session-a.csv.gz').filter(([t]) => Number(t) < 12.2);
+    const later = (t: number | string) => {
+      const us = 1_764_600_000_123_456 + Math.round(Number(t) * 1000) * 1000;
+      return `${String(us).slice(0, -6)}.${String(us).slice(-6)}`;
+    };
+    const [early, late] = await Promise.all([
+      analysed('--rig', rigOf('heron-8'), kept('early.csv', text(all))),
+      analysed('--rig', rigOf('heron-8'), kept('late.csv', text(all.map(([t = '', ...rest]) => [later(t), ...rest])))),
+    ]);
+    expect(early.flags.map(({ kind }) => kind)).toEqual(['slack', 'gap', 'gap', 'saturation', 'saturation']);
+    const shifted = <T extends { start: number; end: number }>(spans: readonly T[]) => spans.map((span) => ({ ...span, start: Number(later(span.start)), end: Number(later(span.end)) }));
+    expect(late.flags).toEqual(shifted(early.flags));
+    expect(late.recording).toEqual({ ...early.recording, gaps: shifted(early.recording.gaps) });
+  });
+
+  test.each([
+    ['inside a slack', 2.7, 2.75, 2.921],
+    ['over the end of a slack, which then ends with the first sample after', 2.85, 3, 3],
+  ])('a gap %s: one slack, one gap', async (_words, from, to, end) => {
+    const rows = table('session-a.csv.gz').filter(([t]) => Number(t) < 4 && !(Number(t) >= from && Number(t) < to));
+    const { flags } = await analysed('--rig', rigOf('heron-8'), kept(`gap-${from}.csv`, text(rows)));
+    expect(flags).toMatchObject([{ kind: 'slack', cable: 4, start: 2.595, end }, { kind: 'gap', start: Math.round(1000 * from - 1) / 1000, end: to }]);
   });
 
   test('rules of a study replace the defaults; null turns a kind off', async () => {
@@ -141,6 +205,16 @@ describe('the same recording in another dress', () => {
     const { recording, measures } = await analysed('--rig', rigOf('heron-8'), kept(`short-${count}.csv`, text(table('session-a.csv.gz').slice(0, count))));
     expect(recording).toMatchObject({ samples: count, rateHz: count === 1 ? null : 1000 });
     expect(measures.notMeasured.length).toBeGreaterThan(0);
+    expect(unsaid(measures)).toEqual([]);
+  });
+
+  test('one sample, with a slack cable, makes up no time', async () => {
+    const rows = table('session-a.csv.gz').filter(([t]) => t === '2.700');
+    const { recording, flags, measures } = await analysed('--rig', rigOf('heron-8'), kept('moment.csv', text(rows)));
+    expect(recording).toEqual({ samples: 1, duration: 0, rateHz: null, gaps: [] });
+    expect(flags).toEqual([]);
+    expect(measures.slackS).toBeLessThanOrEqual(1e-6);
+    expect(measures.peakTensionN).toBeCloseTo(Math.max(...(rows[0] ?? []).slice(at('t1_N'), at('t8_N') + 1).map(Number)), 4);
   });
 
   test('a hand that stands still: no movement, no smoothness, no complaint', async () => {
@@ -149,6 +223,7 @@ describe('the same recording in another dress', () => {
     const { flags, measures } = await analysed('--rig', rigOf('heron-8'), kept('still.csv', text(rows)));
     expect(flags).toEqual([]);
     expect(measures).toMatchObject({ pathLengthM: 0, movements: 0 });
+    expect(unsaid(measures)).toEqual([]);
   });
 });
 
@@ -202,6 +277,7 @@ describe('input at fault: lines on standard error, status 2, nothing on standard
 
   test('arguments that say nothing, too much, or what there is not', async () => {
     await refused([], '--rig');
+    expect(await throughNpm('--loud')).toEqual(await analyse('--loud'));
     await refused(heron, 'a recording');
     await refused([...heron, '--loud', recordingOf('session-a.csv.gz')], 'loud');
     await refused([...heron, 'one.csv', 'two.csv'], 'one recording');

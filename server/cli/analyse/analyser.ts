@@ -34,14 +34,14 @@ export function createAnalyser(rig: RigModel, map: ChannelMap, rules: Rules): An
 type Work = { push(chunk: Chunk): void; finish(): Analysis };
 
 function begin(rig: RigModel, map: ChannelMap, rules: Rules, rateHz: number | null): Work {
-  // With a single sample no rule and no measure depends on the rate.
+  // With a single sample no rule depends on the rate; the sample stands for the clock's least step, so that no time is made up.
   const rate = rateHz ?? 1;
   const flagger = createFlagger(rig, map, rate, rules);
   const summer = recordingSummer(map.names.length, rate);
   const staticsOf = handStatics(rig, map);
   const { min, max } = rig.graspRange;
   const measures = createMeasures({
-    rateHz: rate,
+    rateHz: rateHz ?? 1e6,
     cableCount: rig.cableCount,
     tensionMin: rig.tensionMin,
     tensionMax: rig.tensionMax,

@@ -17,17 +17,18 @@ const NEAR_SHARE = 0.9;
 /** Reversals of tension below this are sensor noise [N]. */
 const LEAST_CYCLE_N = 1;
 
+/** All but the number are null for a cable whose tension was never measured. */
 export interface CableMeasures {
   /** From 1. */
   readonly cable: number;
   readonly meanTensionN: number | null;
   readonly peakTensionN: number | null;
-  readonly slackS: number;
-  readonly nearLimitS: number;
-  readonly saturatedS: number;
+  readonly slackS: number | null;
+  readonly nearLimitS: number | null;
+  readonly saturatedS: number | null;
   /** Rainflow cycles of 1 N or more: what wears the cable. */
-  readonly loadCycles: number;
-  readonly largestCycleN: number;
+  readonly loadCycles: number | null;
+  readonly largestCycleN: number | null;
 }
 
 /** Adds up how long cables were in which state; one sample stands until the next. */
@@ -98,16 +99,19 @@ export function tensionTimes({ cableCount, tensionMax, slackBelow }: TensionLimi
     },
     finish() {
       for (const counter of counters) counter.finish();
-      const cables = counters.map((_, cable) => ({
-        cable: cable + 1,
-        meanTensionN: (measured[cable] as number) > 0 ? (sum[cable] as number) / (measured[cable] as number) : null,
-        peakTensionN: peak[cable] === -Infinity ? null : (peak[cable] as number),
-        slackS: slack[cable] as number,
-        nearLimitS: near[cable] as number,
-        saturatedS: saturated[cable] as number,
-        loadCycles: cycles[cable] as number,
-        largestCycleN: largest[cable] as number,
-      }));
+      const cables = counters.map((_, cable) => {
+        const known = (value: number | undefined): number | null => (peak[cable] === -Infinity ? null : (value as number));
+        return {
+          cable: cable + 1,
+          meanTensionN: known((sum[cable] as number) / (measured[cable] as number)),
+          peakTensionN: known(peak[cable]),
+          slackS: known(slack[cable]),
+          nearLimitS: known(near[cable]),
+          saturatedS: known(saturated[cable]),
+          loadCycles: known(cycles[cable]),
+          largestCycleN: known(largest[cable]),
+        };
+      });
       const total = (values: Float64Array): number => values.reduce((all, value) => all + value, 0);
       const highest = peak.reduce((top, value) => Math.max(top, value), -Infinity);
       return {
