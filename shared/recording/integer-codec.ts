@@ -109,15 +109,10 @@ export function readIntegers(head: ByteReader, streams: StreamReaders, count: nu
   const slope = order === 2 ? head.i32() : 0;
   if (kind & riceBit) {
     const bytes = streams.take(planeWay.stored, head.u32());
-    const differences = (): Int32Array => {
-      if (zigzagScratch.length < count) zigzagScratch = new Int32Array(count);
-      riceDecode(bytes, count, zigzagScratch);
-      return zigzagScratch;
-    };
     return {
       readPlane: () => undefined,
-      decode: () => undoDifferences(differences(), count, order, base, slope),
-      decodeOver: (scale) => (order === 1 ? sumsOver(scale, differences(), count, base) : over(scale, undoDifferences(differences(), count, order, base, slope), count)),
+      decode: () => undoDifferences(riceDifferences(bytes, count), count, order, base, slope),
+      decodeOver: (scale) => over(scale, riceDifferences(bytes, count), count, order, base, slope),
     };
   }
   const bits = head.u8();
@@ -131,25 +126,42 @@ export function readIntegers(head: ByteReader, streams: StreamReaders, count: nu
       for (let i = 0; i < count; i += 1) zigzag[i] = (zigzag[i] as number) | ((bytes[i] as number) << shift);
     },
     decode: () => undoDifferences(zigzag, count, order, base, slope),
-    decodeOver: (scale) => over(scale, undoDifferences(zigzag, count, order, base, slope), count),
+    decodeOver: (scale) => over(scale, zigzag, count, order, base, slope),
   };
 }
 
-/** The same division that the grid was found with, so that the same float32 comes back. */
-function over(scale: number, integers: Int32Array, count: number): Float32Array {
-  const out = new Float32Array(count);
-  for (let i = 0; i < count; i += 1) out[i] = (integers[i] as number) / scale;
-  return out;
+/** In memory that holds until the next column is decoded. */
+function riceDifferences(bytes: Uint8Array, count: number): Int32Array {
+  if (zigzagScratch.length < count) zigzagScratch = new Int32Array(count);
+  riceDecode(bytes, count, zigzagScratch);
+  return zigzagScratch;
 }
 
-/** The commonest case in one pass: first differences summed and divided. */
-function sumsOver(scale: number, zigzag: Int32Array, count: number, base: number): Float32Array {
+/** Undoes the differences and divides in one pass: the same division that the grid was found with, so that the same float32 comes back. */
+function over(scale: number, zigzag: Int32Array, count: number, order: number, base: number, slope: number): Float32Array {
   const out = new Float32Array(count);
-  let value = base;
-  for (let i = 0; i < count; i += 1) {
-    const z = zigzag[i] as number;
-    value = (value + ((z >>> 1) ^ -(z & 1))) | 0;
-    out[i] = value / scale;
+  if (order === 0) {
+    for (let i = 0; i < count; i += 1) {
+      const z = zigzag[i] as number;
+      out[i] = ((base + ((z >>> 1) ^ -(z & 1))) | 0) / scale;
+    }
+  } else if (order === 1) {
+    let value = base;
+    for (let i = 0; i < count; i += 1) {
+      const z = zigzag[i] as number;
+      value = (value + ((z >>> 1) ^ -(z & 1))) | 0;
+      out[i] = value / scale;
+    }
+  } else {
+    let value = base;
+    let step = slope;
+    out[0] = value / scale;
+    for (let i = 1; i < count; i += 1) {
+      const z = zigzag[i] as number;
+      step = (step + ((z >>> 1) ^ -(z & 1))) | 0;
+      value = (value + step) | 0;
+      out[i] = value / scale;
+    }
   }
   return out;
 }
