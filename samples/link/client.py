@@ -83,7 +83,15 @@ class Device:
             wait = min(5.0, wait * 2)
 
     async def send(self, message):
-        await self.socket.send(msgpack.packb(message))
+        """False when the line is down: `serve` sees that too, and sends again from what is durable."""
+        socket = self.socket
+        if socket is None:
+            return False
+        try:
+            await socket.send(msgpack.packb(message))
+            return True
+        except websockets.ConnectionClosed:
+            return False
 
     async def hear(self, message):
         kind, run = message["type"], self.run
@@ -131,9 +139,12 @@ class Device:
         run = self.run
         if self.socket is None or run is None or not run.begun:
             return
-        while run.sent < len(run.batches) and run.sent - run.durable < self.unacked:
-            await self.send(run.batches[run.sent])
+        while run.begun and run.sent < len(run.batches) and run.sent - run.durable < self.unacked:
+            # Taken before it is sent: the link and the rig's loop both come here, and neither may step over a batch.
+            batch = run.batches[run.sent]
             run.sent += 1
+            if not await self.send(batch):
+                return
         if run.reason and run.sent == len(run.batches):
             await self.send({"type": "end", "run": run.name, "batches": len(run.batches), "samples": run.samples, "reason": run.reason})
 
