@@ -80,8 +80,10 @@ export async function addVersion(tx: Database, values: { noteId: string; onVersi
   return true;
 }
 
+/** Who resolved it first stays who resolved it. */
 export async function setResolved(db: Database, noteId: string, resolved: { by: string; at: Date } | null): Promise<void> {
-  await db.update(notes).set({ resolvedBy: resolved?.by ?? null, resolvedAt: resolved?.at ?? null }).where(eq(notes.id, noteId));
+  await db.update(notes).set({ resolvedBy: resolved?.by ?? null, resolvedAt: resolved?.at ?? null })
+    .where(and(eq(notes.id, noteId), resolved === null ? undefined : isNull(notes.resolvedAt)));
 }
 
 export const versionsOf = (db: Database, noteIds: readonly string[]) => db

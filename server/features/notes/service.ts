@@ -134,8 +134,7 @@ export function createNoteService(db: Database, bus: Bus, now: () => Date = () =
 
     async resolve(id: string, resolved: boolean, by: Pick<SignedIn, 'id'>): Promise<Note> {
       const root = await requireRoot(id);
-      const isResolved = root.resolvedAt !== null;
-      if (isResolved !== resolved) await setResolved(db, root.id, resolved ? { by: by.id, at: now() } : null);
+      await setResolved(db, root.id, resolved ? { by: by.id, at: now() } : null);
       return toldTo(root.id, by.id);
     },
 

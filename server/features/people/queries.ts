@@ -42,8 +42,15 @@ export async function openAdministrators(db: Database): Promise<number> {
   return row?.n ?? 0;
 }
 
-export async function insertPerson(db: Database, person: { id: string; name: string; email: string; role: LabRole }): Promise<void> {
-  await db.insert(people).values(person);
+/** As `openAdministrators`; they are held until the transaction ends, so that two cannot leave at once. */
+export async function holdAdministrators(tx: Database): Promise<string[]> {
+  const rows = await tx.select({ id: people.id }).from(people).where(and(eq(people.role, 'administrator'), eq(people.closed, false))).orderBy(asc(people.id)).for('update');
+  return rows.map((row) => row.id);
+}
+
+/** @returns false when the address is taken */
+export async function insertPerson(db: Database, person: { id: string; name: string; email: string; role: LabRole }): Promise<boolean> {
+  return (await db.insert(people).values(person).onConflictDoNothing({ target: people.email }).returning({ id: people.id })).length > 0;
 }
 
 export async function insertPassword(db: Database, account: { id: string; personId: string; passwordHash: string }): Promise<void> {

@@ -9,7 +9,7 @@ import type { Database } from '../../db/engine';
 import { invitation, type Post } from '../../mail';
 import { refuse } from './errors';
 import {
-  allPeople, endSignIns, findPerson, findPersonByEmail, insertPassword, insertPerson, membershipsOf, openAdministrators, type PersonRow, updatePerson,
+  allPeople, endSignIns, findPerson, findPersonByEmail, holdAdministrators, insertPassword, insertPerson, membershipsOf, openAdministrators, type PersonRow, updatePerson,
 } from './queries';
 
 export interface DemoSignIn {
@@ -56,7 +56,7 @@ export function createPeopleService({ db, post, desk, publicUrl, demo }: PeopleD
     const id = v7();
     const passwordHash = await hashPassword(person.password);
     await db.transaction(async (tx) => {
-      await insertPerson(tx, { id, name: person.name, email: person.email.toLowerCase(), role: person.role });
+      if (!(await insertPerson(tx, { id, name: person.name, email: person.email.toLowerCase(), role: person.role }))) throw refuse('EMAIL_TAKEN');
       await insertPassword(tx, { id: v7(), personId: id, passwordHash });
     });
     return { id: personId.parse(id), name: person.name, email: person.email.toLowerCase(), role: person.role };
@@ -74,8 +74,9 @@ export function createPeopleService({ db, post, desk, publicUrl, demo }: PeopleD
     return { id: person.id, name: person.name, email: person.email, role: person.role, memberships, demo: demo !== null };
   }
 
-  async function requireAnotherAdministrator(row: PersonRow): Promise<void> {
-    if (row.role === 'administrator' && !row.closed && (await openAdministrators(db)) <= 1) throw refuse('LAST_ADMINISTRATOR');
+  async function requireAnotherAdministrator(tx: Database, leaving: string): Promise<void> {
+    const administrators = await holdAdministrators(tx);
+    if (administrators.length === 1 && administrators[0] === leaving) throw refuse('LAST_ADMINISTRATOR');
   }
 
   return {
@@ -120,21 +121,21 @@ export function createPeopleService({ db, post, desk, publicUrl, demo }: PeopleD
 
     /** Inviting someone who has not answered yet sends a fresh letter. */
     async invite({ name, email, role }: BodyOf<typeof invitePerson>, by: SignedIn): Promise<Person> {
+      await insertPerson(db, { id: v7(), name, email, role });
       const known = await findPersonByEmail(db, email);
-      if (known && (known.hasPassword || known.closed)) throw refuse('EMAIL_TAKEN');
-      const id = known?.id ?? v7();
-      if (known) await updatePerson(db, id, { name, role });
-      else await insertPerson(db, { id, name, email, role });
+      if (known === null || known.hasPassword || known.closed) throw refuse('EMAIL_TAKEN');
+      const { id } = known;
+      await updatePerson(db, id, { name, role });
       const link = `${publicUrl()}/reset?token=${await desk.invitationToken(id)}`;
       await post.send(email, invitation({ name, by: by.name, link, days: invitationDays }));
       return toPerson(await getPerson(id));
     },
 
     async change(id: string, change: BodyOf<typeof changePerson>): Promise<Person> {
-      const row = await getPerson(id);
+      await getPerson(id);
       const leavesOffice = change.closed === true || (change.role !== undefined && change.role !== 'administrator');
-      if (leavesOffice) await requireAnotherAdministrator(row);
       await db.transaction(async (tx) => {
+        if (leavesOffice) await requireAnotherAdministrator(tx, id);
         await updatePerson(tx, id, change);
         if (change.closed === true) await endSignIns(tx, id);
       });

@@ -28,9 +28,8 @@ export const allStudies = (db: Database, personId: PersonId) => db
   .from(studies).leftJoin(members, and(eq(members.studyId, studies.id), eq(members.personId, personId)))
   .orderBy(asc(studies.code));
 
-export async function studyExists(db: Database, where: { id: string } | { code: string }): Promise<boolean> {
-  const matches = 'id' in where ? eq(studies.id, where.id) : eq(studies.code, where.code);
-  return (await db.select({ id: studies.id }).from(studies).where(matches)).length > 0;
+export async function studyExists(db: Database, id: string): Promise<boolean> {
+  return (await db.select({ id: studies.id }).from(studies).where(eq(studies.id, id))).length > 0;
 }
 
 export const conditionsOf = (db: Database, studyId: StudyId) => db
@@ -50,11 +49,11 @@ export interface NewStudy {
   createdBy: PersonId;
 }
 
-/** With its first rule revision, which holds the default rules. */
-export async function insertStudy(tx: Database, study: NewStudy): Promise<string> {
+/** With its first rule revision, which holds the default rules. @returns null when the code is taken */
+export async function insertStudy(tx: Database, study: NewStudy): Promise<string | null> {
   const { conditions: newConditions, tasks: newTasks, ...values } = study;
-  const [row] = await tx.insert(studies).values(values).returning({ id: studies.id });
-  if (!row) throw new Error('The study was not written');
+  const [row] = await tx.insert(studies).values(values).onConflictDoNothing({ target: studies.code }).returning({ id: studies.id });
+  if (!row) return null;
   await tx.insert(conditions).values(newConditions.map((each, place) => ({ ...each, studyId: row.id, place })));
   await tx.insert(tasks).values(newTasks.map((each, place) => ({ ...each, studyId: row.id, place })));
   await tx.insert(ruleRevisions).values({ studyId: row.id, revision: 1 });

@@ -73,9 +73,9 @@ export function createStudyService(db: Database) {
 
     async create(body: BodyOf<typeof createStudy>, by: SignedIn): Promise<Study> {
       if (hasTwins(body.conditions.map((each) => each.blindCode)) || hasTwins(body.tasks.map((each) => each.code))) throw refuse('STUDY_CODES_TWICE');
-      if (await studyExists(db, { code: body.code })) throw refuse('STUDY_CODE_TAKEN', { code: body.code });
       const id = await db.transaction(async (tx) => {
         const made = await insertStudy(tx, { ...body, createdBy: by.id });
+        if (made === null) throw refuse('STUDY_CODE_TAKEN', { code: body.code });
         await setMembership(tx, { studyId: made, personId: by.id, role: 'lead', blind: false });
         return studyId.parse(made);
       });
@@ -89,7 +89,7 @@ export function createStudyService(db: Database) {
 
     /** An administrator lets themselves in, as a reader. */
     async join(study: StudyId, person: SignedIn): Promise<Member> {
-      if (!(await studyExists(db, { id: study }))) throw refuse('STUDY_UNKNOWN');
+      if (!(await studyExists(db, study))) throw refuse('STUDY_UNKNOWN');
       return setMember(study, person.id, 'reader', false);
     },
 
