@@ -56,8 +56,10 @@ async function recorded(i: number, run: Partial<RunOptions>, upsets: Upsets) {
     url: app.url, key: lab.deviceKey, rig: { code: 'heron-8', revision: 1 }, channels: channelNames(8), humanDelayMs: [1, 2], reconnectMs: [10, 50], speed: 5, seed: 20 + i, upsets,
     source: () => simulateRun({ rig: parseRig(heronFile), task: 'pick-and-place', seed: 7 + i, durationS: 20, chunkSamples: 20, ...run }),
   });
-  await device.connect();
-  await operator.post(`/api/trials/${trial}/arm`, { deviceId: lab.deviceId });
+  // The link may break before the welcome: a device that starts has to try again itself.
+  while (device.state === 'idle') await device.connect().catch(() => undefined);
+  // It may also be down just when the trial is armed: that is refused, and the operator tries again.
+  await expect.poll(async () => (await operator.post(`/api/trials/${trial}/arm`, { deviceId: lab.deviceId })).status).toBe(200);
   await watching.next('trial', ({ state }) => state === 'stopped');
   await watching.next('found');
   const { body } = await operator.get<{ flags: JudgedFlag[] }>(`/api/trials/${trial}/flags`);
