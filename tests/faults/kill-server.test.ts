@@ -23,7 +23,7 @@ afterAll(() => house.close());
 
 const acknowledged = (devices: readonly SimulatedDevice[]): number => devices.flatMap((device) => device.report().runs).reduce((sum, run) => sum + run.acknowledgedBatches, 0);
 
-it(`loses nothing that it acknowledged in ${KILLS} kills under ${DEVICES} devices`, { timeout: 60_000 + KILLS * 30_000 }, async () => {
+it(`loses nothing that it acknowledged in ${KILLS} kills under ${DEVICES} devices`, { timeout: 60_000 + KILLS * 60_000 }, async () => {
   const random = seededRandom(2026);
   let wake: () => void = () => undefined;
   const devices = house.lab.devices.map(({ key }, i) => createSimulatedDevice({
