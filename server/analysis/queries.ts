@@ -31,8 +31,8 @@ export async function storeFlags(db: Database, recordingId: string, ruleRevision
   await db.transaction(async (tx) => {
     const [marked] = await tx.update(recordings).set({ flagsFoundAt: at }).where(and(eq(recordings.id, recordingId), isNull(recordings.flagsFoundAt))).returning({ id: recordings.id });
     if (!marked || found.length === 0) return;
-    await tx.insert(flags).values(found.map(({ kind, cable, startS, endS, peak }) => ({
-      id: v7(), recordingId, ruleRevisionId, kind, cable: cable ?? null, startS, endS, peak: peak ?? null,
+    await tx.insert(flags).values(found.map(({ kind, cable, startS, endS, peak, peakS, severity, evidence }) => ({
+      id: v7(), recordingId, ruleRevisionId, kind, cable: cable ?? null, startS, endS, peak: peak ?? null, peakS: peakS ?? null, severity: severity ?? null, evidence: evidence ?? null,
     })));
   });
 }

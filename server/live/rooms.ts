@@ -131,7 +131,7 @@ export class Rooms {
   }
 
   private flagsMessage(room: string, trialId: TrialId, flags: readonly LiveFlag[]): LiveFromServer {
-    return { type: 'flags', room, trialId, flags: flags.map(({ kind, cable, startS, endS, peak, open }) => ({ kind, cable: cable ?? null, startS, endS, peak: peak ?? null, open })) };
+    return { type: 'flags', room, trialId, flags: flags.map(({ kind, cable, startS, endS, peak, severity, open }) => ({ kind, cable: cable ?? null, startS, endS, peak: peak ?? null, severity: severity ?? null, open })) };
   }
 
   private samples(event: Parameters<Thinner['push']>[0]): void {

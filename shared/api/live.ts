@@ -22,7 +22,7 @@ export const liveFromClient = z.discriminatedUnion('type', [
 ]);
 export type LiveFromClient = z.infer<typeof liveFromClient>;
 
-export const liveFlag = flag.omit({ id: true }).extend({ open: z.boolean() });
+export const liveFlag = flag.omit({ id: true, cause: true }).extend({ open: z.boolean() });
 
 export const liveFromServer = z.discriminatedUnion('type', [
   z.object({ type: z.literal('joined'), room: roomName, present: z.array(personRef) }),

@@ -1,5 +1,6 @@
 /** Sessions (visits), their planned and recorded trials, and the session's own log. */
 import { z } from 'zod';
+import { causeKinds, severities } from '../flags';
 import { condition, task } from './studies';
 import {
   conditionId, deviceId, done, flagId, line, participantId, recordingId, rigRevisionId, sessionId, studyId, taskId, trialId, wallTime,
@@ -212,6 +213,10 @@ export const flag = z.object({
   endS: z.number(),
   /** Lowest tension of a slack, highest of a saturation (N); step of a slip (m); kinds without one: null. */
   peak: z.number().nullable(),
+  /** Null: found before flags had one. */
+  severity: z.enum(severities).nullable(),
+  /** Why it happened, in short; null: not looked into. */
+  cause: z.object({ kind: z.enum(causeKinds), sentence: z.string() }).nullable(),
 });
 export type Flag = z.infer<typeof flag>;
 

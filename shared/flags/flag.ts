@@ -1,6 +1,10 @@
 /** A machine-found moment of a recording. */
 export type FlagKind = 'slack' | 'saturation' | 'near-limit' | 'gap' | 'slip' | 'oscillation' | 'unreachable' | 'active' | 'drop';
 
+/** How much a flag weighs; each detector says in its rule file by which figure. */
+export const severities = ['slight', 'marked', 'severe'] as const;
+export type Severity = (typeof severities)[number];
+
 export type Flag = {
   readonly kind: FlagKind;
   /** Numbered from 1; absent when the moment is not one cable's. */
@@ -10,6 +14,11 @@ export type Flag = {
   readonly endS: number;
   /** Slack: lowest tension, N. Saturation: highest tension, N. Slip: largest departure with its sign, m. Oscillation: amplitude, m. */
   readonly peak?: number;
+  /** Time of the peak, s. */
+  readonly peakS?: number;
+  readonly severity?: Severity;
+  /** What the detector saw at the peak, by name with its unit (`tensionN`, `energyJ`): plain figures, finite. */
+  readonly evidence?: Readonly<Record<string, number>>;
   /** Still going on at the last sample seen; `endS` is then that sample's time. */
   readonly open?: true;
 };

@@ -1,5 +1,7 @@
 /** Rule revisions of studies, and the flags found under them. */
+import { sql } from 'drizzle-orm';
 import { doublePrecision, index, integer, jsonb, pgTable, text, unique, uuid } from 'drizzle-orm/pg-core';
+import type { Cause, Severity } from '@shared/flags';
 import { at, id } from './columns';
 import { recordings } from './recordings';
 import { studies } from './studies';
@@ -23,4 +25,14 @@ export const flags = pgTable('flags', {
   startS: doublePrecision('start_s').notNull(),
   endS: doublePrecision('end_s').notNull(),
   peak: doublePrecision('peak'),
+  peakS: doublePrecision('peak_s'),
+  severity: text('severity').$type<Severity>(),
+  evidence: jsonb('evidence').$type<Record<string, number>>(),
+  cause: jsonb('cause').$type<Cause>(),
+  /** A later rule revision finds it no more; its verdicts stay in the record. */
+  removedAt: at('removed_at'),
+  removedByRuleRevisionId: uuid('removed_by_rule_revision_id').references(() => ruleRevisions.id),
 }, (table) => [index('flags_recording').on(table.recordingId, table.startS)]);
+
+/** A cause as lists show it, without what its picture needs. */
+export const shortCause = sql<Pick<Cause, 'kind' | 'sentence'> | null>`case when ${flags.cause} is null then null else json_build_object('kind', ${flags.cause}->>'kind', 'sentence', ${flags.cause}->>'sentence') end`;

@@ -1,6 +1,6 @@
-import { asc, desc, eq } from 'drizzle-orm';
+import { and, asc, desc, eq, isNull } from 'drizzle-orm';
 import type { Database } from '../../db/engine';
-import { flags, recordings } from '../../db/schema';
+import { flags, recordings, shortCause } from '../../db/schema';
 
 /** The newest recording of a trial: whether it is whole, and whether it was looked through. */
 export async function findSearchState(db: Database, trialId: string) {
@@ -10,5 +10,5 @@ export async function findSearchState(db: Database, trialId: string) {
 }
 
 export const flagsOf = (db: Database, recordingId: string) => db
-  .select({ id: flags.id, kind: flags.kind, cable: flags.cable, startS: flags.startS, endS: flags.endS, peak: flags.peak })
-  .from(flags).where(eq(flags.recordingId, recordingId)).orderBy(asc(flags.startS), asc(flags.kind), asc(flags.cable));
+  .select({ id: flags.id, kind: flags.kind, cable: flags.cable, startS: flags.startS, endS: flags.endS, peak: flags.peak, severity: flags.severity, cause: shortCause })
+  .from(flags).where(and(eq(flags.recordingId, recordingId), isNull(flags.removedAt))).orderBy(asc(flags.startS), asc(flags.kind), asc(flags.cable));

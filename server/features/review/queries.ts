@@ -1,9 +1,9 @@
 import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
 import type { Database } from '../../db/engine';
-import { conditions, flags, participants, people, recordings, sessions, tasks, trials, verdicts } from '../../db/schema';
+import { conditions, flags, participants, people, recordings, sessions, shortCause, tasks, trials, verdicts } from '../../db/schema';
 
 export const momentsOf = (db: Database, studyId: string) => db.select({
-  id: flags.id, kind: flags.kind, cable: flags.cable, startS: flags.startS, endS: flags.endS, peak: flags.peak,
+  id: flags.id, kind: flags.kind, cable: flags.cable, startS: flags.startS, endS: flags.endS, peak: flags.peak, severity: flags.severity, cause: shortCause,
   trialId: trials.id, trialNumber: trials.number, task: tasks.title,
   condition: { id: conditions.id, blindCode: conditions.blindCode, label: conditions.label },
   sessionId: sessions.id, participantCode: participants.code, visit: sessions.visit, plannedAt: sessions.plannedAt,
@@ -15,7 +15,7 @@ export const momentsOf = (db: Database, studyId: string) => db.select({
   .innerJoin(participants, eq(participants.id, sessions.participantId))
   .innerJoin(tasks, eq(tasks.id, trials.taskId))
   .innerJoin(conditions, eq(conditions.id, trials.conditionId))
-  .where(eq(sessions.studyId, studyId))
+  .where(and(eq(sessions.studyId, studyId), isNull(flags.removedAt)))
   .orderBy(asc(sessions.plannedAt), asc(trials.number), asc(flags.startS), asc(flags.kind), asc(flags.cable));
 
 export type MomentRow = Awaited<ReturnType<typeof momentsOf>>[number];
@@ -27,7 +27,7 @@ export async function holdFlags(tx: Database, studyId: string, ids: readonly str
     .innerJoin(recordings, eq(recordings.id, flags.recordingId))
     .innerJoin(trials, and(eq(trials.id, recordings.trialId), isNull(trials.removedAt)))
     .innerJoin(sessions, eq(sessions.id, trials.sessionId))
-    .where(and(inArray(flags.id, [...ids]), eq(sessions.studyId, studyId)));
+    .where(and(inArray(flags.id, [...ids]), eq(sessions.studyId, studyId), isNull(flags.removedAt)));
 }
 
 const verdictColumns = { id: verdicts.id, flagId: verdicts.flagId, authorId: verdicts.authorId, author: people.name, value: verdicts.value, reason: verdicts.reason, at: verdicts.at };

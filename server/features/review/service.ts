@@ -30,7 +30,7 @@ function byFlag(rows: readonly VerdictRow[]): Map<string, VerdictRow[]> {
 }
 
 const toMoment = (row: MomentRow, verdicts: readonly VerdictRow[], blind: boolean): Moment => ({
-  id: flagId.parse(row.id), kind: row.kind, cable: row.cable, startS: row.startS, endS: row.endS, peak: row.peak,
+  id: flagId.parse(row.id), kind: row.kind, cable: row.cable, startS: row.startS, endS: row.endS, peak: row.peak, severity: row.severity, cause: row.cause,
   trialId: trialId.parse(row.trialId), trialNumber: row.trialNumber, task: row.task,
   condition: { id: conditionId.parse(row.condition.id), blindCode: row.condition.blindCode, label: blind ? null : row.condition.label },
   sessionId: sessionId.parse(row.sessionId), participantCode: row.participantCode, visit: row.visit, plannedAt: row.plannedAt.toISOString(),

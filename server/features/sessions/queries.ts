@@ -10,7 +10,7 @@ const sessionColumns = {
   trialsPlanned: sql<number>`(select count(*)::int from trials t where t.session_id = ${sessions.id} and t.removed_at is null)`,
   trialsRecorded: sql<number>`(select count(*)::int from trials t where t.session_id = ${sessions.id} and t.removed_at is null
     and exists (select 1 from recordings r where r.trial_id = t.id))`,
-  flags: sql<number>`(select count(*)::int from trials t join recordings r on r.trial_id = t.id join flags f on f.recording_id = r.id
+  flags: sql<number>`(select count(*)::int from trials t join recordings r on r.trial_id = t.id join flags f on f.recording_id = r.id and f.removed_at is null
     where t.session_id = ${sessions.id} and t.removed_at is null)`,
 };
 
@@ -42,7 +42,7 @@ const trialColumns = {
   condition: { id: conditions.id, blindCode: conditions.blindCode, label: conditions.label },
   /** Of the newest recording, µs; null when there is none. */
   lastUs: sql<number | null>`(select r.last_us from recordings r where r.trial_id = ${trials.id} order by r.started_at desc limit 1)`,
-  flags: sql<number>`(select count(*)::int from recordings r join flags f on f.recording_id = r.id where r.trial_id = ${trials.id})`,
+  flags: sql<number>`(select count(*)::int from recordings r join flags f on f.recording_id = r.id and f.removed_at is null where r.trial_id = ${trials.id})`,
   notes: sql<number>`(select count(*)::int from notes n where n.trial_id = ${trials.id} and n.reply_to is null)`,
 };
 
